@@ -1,0 +1,23 @@
+import type { EpochSeconds, Seconds } from './units.ts';
+
+/**
+ * good: believed. over-range: at or beyond the input's range. missing: not a
+ * number came. excitation: the measured excitation is too low to divide by.
+ */
+export const QUALITIES = ['good', 'over-range', 'missing', 'excitation'] as const;
+export type Quality = (typeof QUALITIES)[number];
+
+/** One channel's samples of one frame, in the channel's SI unit; NaN where not believed. */
+export interface ChannelBlock {
+  /** Index into the site's channels, in site order. */
+  readonly channel: number;
+  readonly t0: EpochSeconds;
+  readonly dt: Seconds;
+  readonly values: Float64Array;
+  /** Over the believed samples; +Infinity, −Infinity where there is none. */
+  readonly min: number;
+  readonly max: number;
+  /** The last sample, believed or not. */
+  readonly last: number;
+  readonly quality: Quality;
+}

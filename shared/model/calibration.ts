@@ -1,0 +1,75 @@
+import type { EpochSeconds, Ohm, Ratio, Volt } from './units.ts';
+
+/** Where the excitation of a bridge is known from. */
+export type Excitation =
+  | { readonly kind: 'stated'; readonly volts: Volt }
+  /** Another input of the same node measures it, sample by sample, in V. */
+  | { readonly kind: 'measured'; readonly input: string };
+
+/** What the node's figure is, and so how it becomes V/V or the SI unit of a transducer. */
+export type Signal =
+  | { readonly kind: 'ratio' }
+  | { readonly kind: 'volts'; readonly excitation: Excitation }
+  /** `(count − zeroCount) · perCount` is V/V. */
+  | { readonly kind: 'counts'; readonly as: 'ratio'; readonly perCount: number; readonly zeroCount: number }
+  /** `(count − zeroCount) · perCount` is V. */
+  | {
+      readonly kind: 'counts';
+      readonly as: 'volts';
+      readonly perCount: number;
+      readonly zeroCount: number;
+      readonly excitation: Excitation;
+    }
+  /** Already N, m or °C, or a voltage that a linear response turns into one. */
+  | { readonly kind: 'direct' };
+
+/** Arms are numbered round the ring; arm 1 sees the strain that is reported. */
+export type BridgeCircuit =
+  | 'quarter'
+  | 'half-poisson'
+  | 'half-bending'
+  | 'half-opposite'
+  | 'full-bending'
+  | 'full-bending-poisson'
+  | 'full-axial-poisson'
+  | 'full-torsion';
+
+/** Resistance is of one conductor. */
+export type Leads =
+  | { readonly kind: 'none' }
+  /** Both conductors in the gauge's arm; `trimmed` if the adjacent arm holds as much. */
+  | { readonly kind: 'two-wire'; readonly resistance: Ohm; readonly trimmed: boolean }
+  | { readonly kind: 'three-wire'; readonly resistance: Ohm }
+  /** Full bridge whose excitation drops along two conductors. */
+  | { readonly kind: 'excitation'; readonly resistance: Ohm };
+
+export interface BridgeResponse {
+  readonly kind: 'bridge';
+  readonly circuit: BridgeCircuit;
+  readonly gaugeFactor: number;
+  readonly gaugeResistance: Ohm;
+  /** Poisson's ratio of the member under the gauge; used by the circuits with Poisson arms. */
+  readonly poisson: number;
+  readonly leads: Leads;
+  /** Bridge output of the structure's zero state, V/V. Subtracted as strain, after inversion. */
+  readonly zero: Ratio;
+}
+
+/** A transducer: `(signal − zero) · perUnit` is N, m or °C. */
+export interface LinearResponse {
+  readonly kind: 'linear';
+  readonly perUnit: number;
+  readonly zero: number;
+}
+
+export type Response = BridgeResponse | LinearResponse;
+
+/** In force from `validFrom` until the next record of the same channel. Added, never edited. */
+export interface CalibrationRecord {
+  readonly id: string;
+  readonly validFrom: EpochSeconds;
+  readonly author: string;
+  readonly reason: string;
+  readonly signal: Signal;
+  readonly response: Response;
+}
