@@ -1,0 +1,156 @@
+/** The border of the server: what flow.ts needs of the world, each with siblings that provide it. */
+import type { Frame, InputBlock, Result } from '../shared/model/frame.ts';
+import type { AlarmEvent, Limit } from '../shared/model/limit.ts';
+import type { Site } from '../shared/model/site.ts';
+import type { EpochSeconds } from '../shared/model/units.ts';
+import type { AlarmList, CurrentValue, Fault, Health, History, LimitsRequest, NodeTally } from '../shared/protocol/http.ts';
+import type { LiveValue, Snapshot } from '../shared/protocol/socket.ts';
+
+/** A message as a node published it. */
+export interface Delivery {
+  readonly topic: string;
+  readonly payload: Uint8Array;
+  readonly retained: boolean;
+  readonly arrived: EpochSeconds;
+  /** Sends the acknowledgement (QoS 1). Called once: the content is durable, or refused for good. */
+  readonly acknowledge: () => void;
+}
+
+/** Where deliveries come from: the embedded broker, or a client of another. */
+export interface FrameSource {
+  /** Resolves once messages can arrive. */
+  start(receive: (delivery: Delivery) => void): Promise<void>;
+  stop(): Promise<void>;
+  /** Is the broker in reach now? */
+  connected(): boolean;
+}
+
+export interface StoredFrame {
+  readonly frame: Frame;
+  readonly arrived: EpochSeconds;
+}
+
+/** stored: durable now and was not there before. duplicate: was durable already. */
+export type Stored = 'stored' | 'duplicate';
+
+/** What a node's boot has in store: `ranges` of sequence numbers, ends included, ascending, apart. */
+export interface BootTally {
+  readonly node: string;
+  readonly boot: string;
+  readonly sequenced: boolean;
+  readonly ranges: readonly (readonly [first: number, last: number])[];
+  readonly frames: number;
+  readonly samples: number;
+  readonly firstArrived: EpochSeconds;
+  readonly lastArrived: EpochSeconds;
+}
+
+/**
+ * A series of raw figures in store: an input, or an input divided sample by
+ * sample by the input that measures its excitation.
+ */
+export interface SeriesKey {
+  readonly node: string;
+  readonly input: string;
+  readonly over: string | null;
+}
+
+export interface EnvelopeQuery {
+  readonly series: SeriesKey;
+  readonly from: EpochSeconds;
+  /** Not included. */
+  readonly to: EpochSeconds;
+  /** At most so many points come back, at least 1. */
+  readonly points: number;
+}
+
+/** Raw envelope: equal-length columns, ascending in time; a stretch without samples has no point. */
+export interface Envelope {
+  /** Time of each point's first instant, s. */
+  readonly t: Float64Array;
+  readonly min: Float64Array;
+  readonly mean: Float64Array;
+  readonly max: Float64Array;
+  readonly count: Float64Array;
+  /** Width of a point, s. */
+  readonly step: number;
+}
+
+export interface RawRun extends InputBlock {
+  readonly boot: string;
+  readonly t0: EpochSeconds;
+  readonly dt: number;
+}
+
+export interface SampleQuery {
+  readonly node: string;
+  readonly input: string;
+  readonly from: EpochSeconds;
+  readonly to: EpochSeconds;
+  /** Throws RangeError past so many samples, before reading them. */
+  readonly atMost: number;
+}
+
+/** Raw samples as measured, and what is derived of them. Nothing in it knows of strain. */
+export interface SampleStore {
+  /** Durable when it resolves: all of the frames, or on rejection none counted. Answers in order. */
+  commit(frames: readonly StoredFrame[]): Promise<readonly Stored[]>;
+  has(node: string, boot: string, seq: number): Promise<boolean>;
+  tally(): Promise<readonly BootTally[]>;
+  envelope(query: EnvelopeQuery): Promise<Envelope>;
+  /** Runs whose samples touch [from, to), whole, ascending by t0, then boot. */
+  samples(query: SampleQuery): Promise<readonly RawRun[]>;
+  close(): Promise<void>;
+}
+
+export interface LimitChange {
+  readonly channel: string;
+  readonly limits: readonly Limit[];
+  readonly at: EpochSeconds;
+  readonly author: string;
+  readonly reason: string;
+}
+
+/** What people and alarms wrote: small, kept for ever, added to only. */
+export interface RecordStore {
+  /** Durable when it resolves; an event whose id is there already is left as it is. */
+  addAlarmEvents(events: readonly AlarmEvent[]): Promise<void>;
+  /** Newest first. */
+  alarmEvents(atMost: number): Promise<readonly AlarmEvent[]>;
+  /** The last event of each channel and level. */
+  lastAlarmEvents(): Promise<readonly AlarmEvent[]>;
+  addLimitChange(change: LimitChange): Promise<void>;
+  /** The last change of each channel. */
+  limitsInForce(): Promise<readonly LimitChange[]>;
+  close(): Promise<void>;
+}
+
+export interface Clock {
+  now(): EpochSeconds;
+  /** Calls back after `seconds`; the returned function cancels. */
+  after(seconds: number, call: () => void): () => void;
+}
+
+/** What screens and scripts may ask of the running core, and what they may change. */
+export interface Core {
+  site(): Site;
+  health(): Health;
+  snapshot(): Snapshot;
+  values(): readonly CurrentValue[];
+  alarms(): AlarmList;
+  tally(): readonly NodeTally[];
+  /** Refused for an unknown channel; `to` is not included; 1 ≤ points ≤ 20,000. */
+  history(channel: string, from: EpochSeconds, to: EpochSeconds, points: number): Promise<Result<History>>;
+  limits(): Readonly<Record<string, readonly Limit[]>>;
+  /** Every fault at once; none means that the change is durable and in force. */
+  setLimits(channel: string, request: LimitsRequest): Promise<readonly Fault[]>;
+}
+
+/** Browsers, as the core sees them: told, never waited for. */
+export interface Feed {
+  live(values: readonly LiveValue[]): void;
+  alarms(list: AlarmList): void;
+  nodes(nodes: readonly NodeTally[]): void;
+  limits(channel: string, limits: readonly Limit[]): void;
+  health(health: Health): void;
+}

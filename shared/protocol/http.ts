@@ -1,0 +1,93 @@
+/** Shapes of the REST API, one home for both ends. Figures are SI; times are UTC seconds. */
+import type { AlarmEvent, Limit } from '../model/limit.ts';
+import type { Quality } from '../model/block.ts';
+
+export interface Health {
+  readonly ok: boolean;
+  readonly simulated: boolean;
+  readonly version: string;
+  readonly upSince: number;
+  readonly broker: { readonly connected: boolean; readonly description: string };
+  readonly store: { readonly ok: boolean; readonly description: string };
+}
+
+export interface CurrentValue {
+  readonly channel: string;
+  /** Of the last believed sample, in the channel's SI unit; null if there has been none. */
+  readonly value: number | null;
+  readonly at: number | null;
+  readonly quality: Quality | 'stale' | 'none';
+}
+
+/** Columns of equal length, ascending in time; min ≤ mean ≤ max in the channel's SI unit. */
+export interface History {
+  readonly channel: string;
+  readonly simulated: boolean;
+  readonly from: number;
+  readonly to: number;
+  readonly step: number;
+  readonly t: readonly number[];
+  readonly min: readonly number[];
+  readonly mean: readonly number[];
+  readonly max: readonly number[];
+}
+
+export interface RefusalCount {
+  readonly code: string;
+  readonly field: string;
+  readonly expected: string;
+  /** What came the last time. */
+  readonly came: string;
+  readonly count: number;
+  readonly lastAt: number;
+}
+
+/** Frames of one node, since the store began for stored and missing; since start for the rest. */
+export interface NodeTally {
+  readonly node: string;
+  /** false: something publishes under a name that the site file does not have. */
+  readonly known: boolean;
+  readonly status: 'online' | 'offline' | 'unknown';
+  readonly boot: string | null;
+  readonly lastFrameAt: number | null;
+  readonly stale: boolean;
+  readonly received: number;
+  readonly stored: number;
+  readonly duplicate: number;
+  readonly missing: number;
+  readonly refused: number;
+  readonly refusals: readonly RefusalCount[];
+  /** Inputs that came but belong to no channel and no excitation; stored all the same. */
+  readonly unassigned: readonly string[];
+}
+
+export interface ActiveAlarm {
+  readonly channel: string;
+  readonly level: Limit['level'];
+  readonly raised: AlarmEvent;
+}
+
+export interface AlarmList {
+  readonly active: readonly ActiveAlarm[];
+  /** Newest first. */
+  readonly recent: readonly AlarmEvent[];
+}
+
+export interface LimitsRequest {
+  readonly limits: readonly Limit[];
+  readonly author: string;
+  readonly reason: string;
+}
+
+export interface Fault {
+  /** Where, as a JSON pointer or parameter name. */
+  readonly path: string;
+  readonly expected: string;
+  readonly came: string;
+}
+
+/** Body of every answer that is not 2xx. */
+export interface Problem {
+  readonly error: string;
+  readonly faults: readonly Fault[];
+}
