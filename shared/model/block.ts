@@ -1,10 +1,11 @@
 import type { EpochSeconds, Seconds } from './units.ts';
 
 /**
- * good: believed. over-range: at or beyond the input's range. missing: not a
- * number came. excitation: the measured excitation is too low to divide by.
+ * good: believed. over-range: at or beyond the input's range. missing: no
+ * number came. excitation: the measured excitation is out of its range or
+ * nought. uncalibrated: no calibration record was in force yet.
  */
-export const QUALITIES = ['good', 'over-range', 'missing', 'excitation'] as const;
+export const QUALITIES = ['good', 'over-range', 'missing', 'excitation', 'uncalibrated'] as const;
 export type Quality = (typeof QUALITIES)[number];
 
 /** One channel's samples of one frame, in the channel's SI unit; NaN where not believed. */

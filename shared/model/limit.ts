@@ -1,4 +1,5 @@
-import type { EpochSeconds, Seconds } from './units.ts';
+import type { Measurand } from './site.ts';
+import type { EpochSeconds, Pascal, Seconds, Share } from './units.ts';
 
 export type LimitLevel = 'caution' | 'stop';
 
@@ -22,6 +23,17 @@ export interface Limit {
   readonly deadband: number;
   /** The value must stay beyond the limit this long before the alarm is raised. */
   readonly onDelay: Seconds;
+}
+
+/** What a limit of a channel is judged by. */
+export interface LimitContext {
+  readonly measurand: Measurand;
+  /** Stress for a strain of 1 by the member's material; null for a transducer. */
+  readonly stressPerStrain: Pascal | null;
+  /** In the measurand's kind of stress (normal or shear); null for a transducer. */
+  readonly yieldStrength: Pascal | null;
+  /** The share of yield that no limit may pass. */
+  readonly highestLimit: Share;
 }
 
 export type AlarmEventKind = 'raised' | 'returned';

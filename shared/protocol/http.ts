@@ -1,4 +1,5 @@
 /** Shapes of the REST API, one home for both ends. Figures are SI; times are UTC seconds. */
+import type { Fault } from '../model/fault.ts';
 import type { AlarmEvent, Limit } from '../model/limit.ts';
 import type { Quality } from '../model/block.ts';
 
@@ -19,7 +20,11 @@ export interface CurrentValue {
   readonly quality: Quality | 'stale' | 'none';
 }
 
-/** Columns of equal length, ascending in time; min ≤ mean ≤ max in the channel's SI unit. */
+/**
+ * Columns of equal length, ascending in time; min ≤ mean ≤ max in the
+ * channel's SI unit. null where a sample in the point is not to be believed
+ * (over range, excitation): a gap, never a figure.
+ */
 export interface History {
   readonly channel: string;
   readonly simulated: boolean;
@@ -27,9 +32,9 @@ export interface History {
   readonly to: number;
   readonly step: number;
   readonly t: readonly number[];
-  readonly min: readonly number[];
-  readonly mean: readonly number[];
-  readonly max: readonly number[];
+  readonly min: readonly (number | null)[];
+  readonly mean: readonly (number | null)[];
+  readonly max: readonly (number | null)[];
 }
 
 export interface RefusalCount {
@@ -79,12 +84,7 @@ export interface LimitsRequest {
   readonly reason: string;
 }
 
-export interface Fault {
-  /** Where, as a JSON pointer or parameter name. */
-  readonly path: string;
-  readonly expected: string;
-  readonly came: string;
-}
+export type { Fault };
 
 /** Body of every answer that is not 2xx. */
 export interface Problem {

@@ -1,0 +1,74 @@
+import type { Fault } from '../../model/fault.ts';
+import type { Limit, LimitBasis, LimitContext } from '../../model/limit.ts';
+import { thresholdOf } from './threshold.ts';
+
+const LONGEST_ON_DELAY = 3600;
+
+const basesFor = (context: LimitContext): readonly LimitBasis[] =>
+  context.stressPerStrain === null ? ['value'] : ['strain', 'stress', 'share'];
+
+const percent = (share: number): string => `${Number((share * 100).toPrecision(4))} % of yield`;
+
+const figureFaults = (limit: Limit, at: string, context: LimitContext): Fault[] => {
+  const faults: Fault[] = [];
+  const fault = (field: string, expected: string, came: unknown) =>
+    faults.push({ path: `${at}/${field}`, expected, came: String(came) });
+  const bases = basesFor(context);
+  if (!bases.includes(limit.basis)) {
+    fault('basis', `${bases.join(', ')} for a ${context.measurand} channel`, limit.basis);
+  }
+  if (!(Number.isFinite(limit.value) && limit.value > 0)) {
+    fault('value', 'a figure above 0', limit.value);
+  } else if (!(limit.deadband >= 0 && limit.deadband < limit.value)) {
+    fault('deadband', `from 0 to below the limit's value of ${limit.value}`, limit.deadband);
+  }
+  if (!(limit.onDelay >= 0 && limit.onDelay <= LONGEST_ON_DELAY)) {
+    fault('onDelay', `from 0 to ${LONGEST_ON_DELAY} s`, limit.onDelay);
+  }
+  return faults;
+};
+
+/** A limit has to lie below yield, and within the share of it that the site allows. */
+const yieldFault = (limit: Limit, at: string, context: LimitContext): Fault | null => {
+  const { stressPerStrain, yieldStrength, highestLimit } = context;
+  if (stressPerStrain === null || yieldStrength === null) return null;
+  const used = (thresholdOf(limit, context).raise * stressPerStrain) / yieldStrength;
+  if (used < 1 && used <= highestLimit) return null;
+  return {
+    path: `${at}/value`,
+    expected:
+      used >= 1 ? 'below yield' : `at most ${percent(highestLimit)}, the highest the site allows`,
+    came: percent(used),
+  };
+};
+
+const orderFault = (limits: readonly Limit[], context: LimitContext): Fault | null => {
+  const at = (level: Limit['level']) => limits.find((limit) => limit.level === level);
+  const caution = at('caution');
+  const stop = at('stop');
+  if (!caution || !stop) return null;
+  const [first, second] = [thresholdOf(caution, context).raise, thresholdOf(stop, context).raise];
+  if (first < second) return null;
+  return {
+    path: `/limits/${limits.indexOf(caution)}/value`,
+    expected: `below the stop limit of ${stop.value} (${stop.basis})`,
+    came: `${caution.value} (${caution.basis})`,
+  };
+};
+
+/** Everything wrong with a channel's limits at once; none means that they may be put in force. */
+export const limitFaults = (limits: readonly Limit[], context: LimitContext): Fault[] => {
+  const faults = limits.flatMap((limit, i) => {
+    const at = `/limits/${i}`;
+    const first = limits.findIndex((other) => other.level === limit.level);
+    const twice: Fault[] =
+      first < i
+        ? [{ path: `${at}/level`, expected: 'each level once', came: `${limit.level} again` }]
+        : [];
+    return [...twice, ...figureFaults(limit, at, context)];
+  });
+  if (faults.length > 0) return faults;
+  const beyond = limits.flatMap((limit, i) => yieldFault(limit, `/limits/${i}`, context) ?? []);
+  const order = orderFault(limits, context);
+  return order ? [...beyond, order] : beyond;
+};
