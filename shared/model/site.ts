@@ -109,3 +109,13 @@ export interface Site {
   readonly structures: readonly Structure[];
   readonly nodes: readonly FieldNode[];
 }
+
+/** Channels in site order: by structure, member, station, as the file lists them. */
+export const channelsOf = (site: Site): { channel: Channel; member: Member; station: Station }[] =>
+  site.structures.flatMap(({ members }) =>
+    members.flatMap((member) =>
+      member.stations.flatMap((station) =>
+        station.channels.map((channel) => ({ channel, member, station })),
+      ),
+    ),
+  );

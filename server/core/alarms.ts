@@ -1,0 +1,112 @@
+import type { ChannelBlock } from '../../shared/model/block.ts';
+import type { AlarmEvent, Limit, LimitLevel } from '../../shared/model/limit.ts';
+import type { EpochSeconds } from '../../shared/model/units.ts';
+import { evaluate, UNSEEN, type Crossing, type LimitState } from '../../shared/pipeline/5-alarm/evaluate.ts';
+import { thresholdOf, type Threshold } from '../../shared/pipeline/5-alarm/threshold.ts';
+import type { ChannelPlan } from '../../shared/pipeline/index.ts';
+import type { AlarmList } from '../../shared/protocol/http.ts';
+
+const RECENT = 200;
+const LEVELS: readonly LimitLevel[] = ['stop', 'caution'];
+
+interface Watch {
+  readonly threshold: Threshold;
+  state: LimitState;
+  /** Of late frames: what they raise and return stands in the past, not in the present. */
+  late: LimitState;
+}
+
+const eventOf = (id: string, { threshold }: Watch, crossing: Crossing): AlarmEvent => ({
+  id: `${id}/${threshold.level}/${crossing.kind}/${Math.round(crossing.at * 1e6)}`,
+  channel: id,
+  level: threshold.level,
+  ...crossing,
+  threshold: Math.sign(crossing.value) * threshold.raise,
+});
+
+/** The alarm stage with its memory: every sample of every channel against the limits in force. */
+export class AlarmKeeper {
+  readonly #channels: readonly ChannelPlan[];
+  readonly #watches: Watch[][];
+  readonly #active = new Map<string, AlarmEvent>();
+  #recent: AlarmEvent[];
+
+  /** `last`: the last event of each channel and level; `recent`: newest first. */
+  constructor(
+    channels: readonly ChannelPlan[],
+    limits: Readonly<Record<string, readonly Limit[]>>,
+    last: readonly AlarmEvent[],
+    recent: readonly AlarmEvent[],
+  ) {
+    this.#channels = channels;
+    this.#recent = recent.slice(0, RECENT);
+    for (const event of last) this.#note(event);
+    this.#watches = channels.map((plan) => this.#watch(plan, limits[plan.channel.id] ?? []));
+  }
+
+  /** Puts a channel's limits in force from the next sample on; gives what ends thereby. */
+  setLimits(plan: ChannelPlan, limits: readonly Limit[], at: EpochSeconds): AlarmEvent[] {
+    const dropped = (this.#watches[plan.index] ?? []).filter(
+      ({ threshold, state }) =>
+        state.phase === 'raised' && !limits.some(({ level }) => level === threshold.level),
+    );
+    const ended = dropped.flatMap((watch) => {
+      const raised = this.#active.get(`${plan.channel.id}/${watch.threshold.level}`);
+      if (!raised) return [];
+      return [eventOf(plan.channel.id, watch, { kind: 'returned', at, value: raised.value })];
+    });
+    for (const event of ended) this.#note(event);
+    this.#watches[plan.index] = this.#watch(plan, limits);
+    return ended;
+  }
+
+  accept(blocks: readonly ChannelBlock[], late: boolean): AlarmEvent[] {
+    const events: AlarmEvent[] = [];
+    for (const block of blocks) {
+      for (const watch of this.#watches[block.channel] ?? []) {
+        const result = evaluate(late ? watch.late : watch.state, block, watch.threshold);
+        if (late) watch.late = result.state;
+        else watch.state = result.state;
+        for (const crossing of result.crossings) {
+          const id = this.#channels[block.channel]?.channel.id ?? '';
+          events.push(eventOf(id, watch, crossing));
+        }
+      }
+    }
+    for (const event of events) {
+      if (late) this.#remember(event);
+      else this.#note(event);
+    }
+    return events;
+  }
+
+  list(): AlarmList {
+    const active = [...this.#active.values()]
+      .map((raised) => ({ channel: raised.channel, level: raised.level, raised }))
+      .sort(
+        (a, b) =>
+          LEVELS.indexOf(a.level) - LEVELS.indexOf(b.level) || b.raised.at - a.raised.at,
+      );
+    return { active, recent: this.#recent };
+  }
+
+  #watch(plan: ChannelPlan, limits: readonly Limit[]): Watch[] {
+    return limits.map((limit) => {
+      const raised = this.#active.get(`${plan.channel.id}/${limit.level}`);
+      const state: LimitState = raised ? { phase: 'raised', since: raised.at } : UNSEEN;
+      return { threshold: thresholdOf(limit, plan.context), state, late: UNSEEN };
+    });
+  }
+
+  #note(event: AlarmEvent): void {
+    const key = `${event.channel}/${event.level}`;
+    if (event.kind === 'raised') this.#active.set(key, event);
+    else this.#active.delete(key);
+    this.#remember(event);
+  }
+
+  #remember(event: AlarmEvent): void {
+    if (this.#recent.some(({ id }) => id === event.id)) return;
+    this.#recent = [event, ...this.#recent].slice(0, RECENT);
+  }
+}

@@ -1,0 +1,149 @@
+/** The way of a frame, in the order the data meets it: decode → ratio → strain → stress → alarm. */
+import type { ChannelBlock, Quality } from '../model/block.ts';
+import type { CalibrationRecord } from '../model/calibration.ts';
+import { compose, type FractionalLinear } from '../model/fractional-linear.ts';
+import { sampleCount, type Frame, type InputBlock } from '../model/frame.ts';
+import type { LimitContext } from '../model/limit.ts';
+import { channelsOf, type Channel, type Member, type Site } from '../model/site.ts';
+import { excitationInput, signalMap } from './2-ratio/signal.ts';
+import { bridgeStrain, linearValue } from './3-strain/bridge.ts';
+import { stressPerStrain, yieldFor } from './4-stress/stress.ts';
+import { convert, convertOver, type Range } from './convert.ts';
+
+/** A calibration record made ready: raw figure (over excitation, if measured) → channel's SI value. */
+export interface Conversion {
+  readonly record: CalibrationRecord;
+  readonly excitation: string | null;
+  readonly map: FractionalLinear;
+}
+
+/** A channel with all that is worked out once for it. */
+export interface ChannelPlan {
+  /** Place among the site's channels, in site order. */
+  readonly index: number;
+  readonly channel: Channel;
+  readonly member: Member;
+  readonly context: LimitContext;
+  readonly conversions: readonly Conversion[];
+  readonly range: Range;
+  readonly excitationRange: (input: string) => Range;
+}
+
+export interface SitePlan {
+  readonly channels: readonly ChannelPlan[];
+  /** Channels that read an input, by node and input. */
+  readonly readers: ReadonlyMap<string, ReadonlyMap<string, readonly ChannelPlan[]>>;
+}
+
+export const conversionOf = (record: CalibrationRecord): Conversion => ({
+  record,
+  excitation: excitationInput(record.signal),
+  map: compose(
+    signalMap(record.signal),
+    record.response.kind === 'bridge'
+      ? bridgeStrain(record.response)
+      : linearValue(record.response),
+  ),
+});
+
+export const limitContextOf = (channel: Channel, member: Member, site: Site): LimitContext => ({
+  measurand: channel.measurand,
+  stressPerStrain: stressPerStrain(channel.measurand, member.material),
+  yieldStrength: yieldFor(channel.measurand, member.material),
+  highestLimit: site.highestLimit,
+});
+
+export const planSite = (site: Site): SitePlan => {
+  const ranges = new Map(
+    site.nodes.map((node) => [node.id, new Map(node.inputs.map((i) => [i.name, i.range]))]),
+  );
+  const rangeOf = (node: string, input: string): Range => ranges.get(node)?.get(input) ?? null;
+  const channels = channelsOf(site).map(
+    ({ channel, member }, index): ChannelPlan => ({
+      index,
+      channel,
+      member,
+      context: limitContextOf(channel, member, site),
+      conversions: channel.calibration.map(conversionOf),
+      range: rangeOf(channel.node, channel.input),
+      excitationRange: (input) => rangeOf(channel.node, input),
+    }),
+  );
+  const readers = new Map<string, Map<string, ChannelPlan[]>>();
+  for (const plan of channels) {
+    const inputs = readers.get(plan.channel.node) ?? new Map<string, ChannelPlan[]>();
+    readers.set(plan.channel.node, inputs);
+    inputs.set(plan.channel.input, [...(inputs.get(plan.channel.input) ?? []), plan]);
+  }
+  return { channels, readers };
+};
+
+/** Place of the record in force at time `t` (s); −1 before the first. */
+export const conversionAt = (conversions: readonly Conversion[], t: number): number =>
+  conversions.findLastIndex(({ record }) => record.validFrom <= t);
+
+/** Samples [from, to) that one record governs. */
+const stretchBounds = (conversions: readonly Conversion[], frame: Frame, from: number): number => {
+  const count = sampleCount(frame);
+  const at = conversionAt(conversions, frame.t0 + from * frame.dt);
+  const next = conversions[at + 1];
+  if (!next || !(frame.dt > 0)) return count;
+  return Math.min(count, Math.ceil((next.record.validFrom - frame.t0) / frame.dt));
+};
+
+const convertStretch = (
+  plan: ChannelPlan,
+  frame: Frame,
+  { samples }: InputBlock,
+  from: number,
+  to: number,
+  values: Float64Array,
+) => {
+  const none = (quality: Quality) => {
+    values.fill(NaN, from, to);
+    return { min: Infinity, max: -Infinity, last: NaN, quality };
+  };
+  const conversion = plan.conversions[conversionAt(plan.conversions, frame.t0 + from * frame.dt)];
+  if (!conversion) return none('uncalibrated');
+  const { map, excitation } = conversion;
+  if (excitation === null) return convert(samples, map, plan.range, from, to, values);
+  const over = frame.inputs.find(({ input }) => input === excitation)?.samples;
+  if (!over) return none('excitation');
+  return convertOver(
+    samples,
+    over,
+    map,
+    plan.range,
+    plan.excitationRange(excitation),
+    from,
+    to,
+    values,
+  );
+};
+
+const blockOf = (plan: ChannelPlan, frame: Frame, block: InputBlock): ChannelBlock => {
+  const count = block.samples.length;
+  const values = new Float64Array(count);
+  let [min, max, last, from] = [Infinity, -Infinity, NaN, 0];
+  let quality: Quality = 'missing';
+  while (from < count) {
+    const to = Math.max(from + 1, stretchBounds(plan.conversions, frame, from));
+    const stretch = convertStretch(plan, frame, block, from, to, values);
+    min = Math.min(min, stretch.min);
+    max = Math.max(max, stretch.max);
+    ({ last, quality } = stretch);
+    from = to;
+  }
+  return { channel: plan.index, t0: frame.t0, dt: frame.dt, values, min, max, last, quality };
+};
+
+/** Every channel that the frame feeds, each sample by the calibration record in force at its time. */
+export const channelBlocks = (frame: Frame, plan: SitePlan): ChannelBlock[] => {
+  const readers = plan.readers.get(frame.node);
+  if (!readers) return [];
+  const blocks: ChannelBlock[] = [];
+  for (const block of frame.inputs) {
+    for (const reader of readers.get(block.input) ?? []) blocks.push(blockOf(reader, frame, block));
+  }
+  return blocks;
+};
