@@ -3,7 +3,15 @@ import type { Frame, InputBlock, Result } from '../shared/model/frame.ts';
 import type { AlarmEvent, Limit } from '../shared/model/limit.ts';
 import type { Site } from '../shared/model/site.ts';
 import type { EpochSeconds } from '../shared/model/units.ts';
-import type { AlarmList, CurrentValue, Fault, Health, History, LimitsRequest, NodeTally } from '../shared/protocol/http.ts';
+import type {
+  AlarmList,
+  CurrentValue,
+  Fault,
+  Health,
+  History,
+  LimitsRequest,
+  NodeTally,
+} from '../shared/protocol/http.ts';
 import type { LiveValue, Snapshot } from '../shared/protocol/socket.ts';
 
 /** A message as a node published it. */
@@ -140,7 +148,12 @@ export interface Core {
   alarms(): AlarmList;
   tally(): readonly NodeTally[];
   /** Refused for an unknown channel; `to` is not included; 1 ≤ points ≤ 20,000. */
-  history(channel: string, from: EpochSeconds, to: EpochSeconds, points: number): Promise<Result<History>>;
+  history(
+    channel: string,
+    from: EpochSeconds,
+    to: EpochSeconds,
+    points: number,
+  ): Promise<Result<History>>;
   limits(): Readonly<Record<string, readonly Limit[]>>;
   /** Every fault at once; none means that the change is durable and in force. */
   setLimits(channel: string, request: LimitsRequest): Promise<readonly Fault[]>;

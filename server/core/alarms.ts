@@ -1,7 +1,12 @@
 import type { ChannelBlock } from '../../shared/model/block.ts';
 import type { AlarmEvent, Limit, LimitLevel } from '../../shared/model/limit.ts';
 import type { EpochSeconds } from '../../shared/model/units.ts';
-import { evaluate, UNSEEN, type Crossing, type LimitState } from '../../shared/pipeline/5-alarm/evaluate.ts';
+import {
+  evaluate,
+  UNSEEN,
+  type Crossing,
+  type LimitState,
+} from '../../shared/pipeline/5-alarm/evaluate.ts';
 import { thresholdOf, type Threshold } from '../../shared/pipeline/5-alarm/threshold.ts';
 import type { ChannelPlan } from '../../shared/pipeline/index.ts';
 import type { AlarmList } from '../../shared/protocol/http.ts';
@@ -84,8 +89,7 @@ export class AlarmKeeper {
     const active = [...this.#active.values()]
       .map((raised) => ({ channel: raised.channel, level: raised.level, raised }))
       .sort(
-        (a, b) =>
-          LEVELS.indexOf(a.level) - LEVELS.indexOf(b.level) || b.raised.at - a.raised.at,
+        (a, b) => LEVELS.indexOf(a.level) - LEVELS.indexOf(b.level) || b.raised.at - a.raised.at,
       );
     return { active, recent: this.#recent };
   }

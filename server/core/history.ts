@@ -1,8 +1,8 @@
 import { apply, isRising } from '../../shared/model/fractional-linear.ts';
 import { epochSeconds, type EpochSeconds } from '../../shared/model/units.ts';
-import { conversionAt, type ChannelPlan, type Conversion } from '../../shared/pipeline/index.ts';
+import type { ChannelPlan, Conversion } from '../../shared/pipeline/index.ts';
 import type { Range } from '../../shared/pipeline/convert.ts';
-import type { Envelope, SampleStore } from '../ports.ts';
+import type { Envelope, EnvelopeQuery, SampleStore } from '../ports.ts';
 
 type Column = (number | null)[];
 
@@ -25,27 +25,37 @@ const windows = (plan: ChannelPlan, from: number, to: number): Window[] =>
   plan.conversions.flatMap((conversion, i) => {
     const start = Math.max(from, conversion.record.validFrom);
     const end = Math.min(to, plan.conversions[i + 1]?.record.validFrom ?? Infinity);
-    return start < end && i >= conversionAt(plan.conversions, from) ? [{ from: start, to: end, conversion }] : [];
+    return start < end ? [{ from: start, to: end, conversion }] : [];
   });
 
-const within = (range: Range, min: number, max: number): boolean =>
-  range === null || (min > range[0] && max < range[1]);
+/** Times of points in which a sample of the input reached an end of its range. */
+const overRange = async (
+  store: SampleStore,
+  node: string,
+  input: string,
+  range: Range,
+  query: Omit<EnvelopeQuery, 'series'>,
+): Promise<ReadonlySet<number>> => {
+  if (range === null) return new Set();
+  const raw = await store.envelope({ ...query, series: { node, input, over: null } });
+  const inside = (i: number) => (raw.min[i] ?? NaN) > range[0] && (raw.max[i] ?? NaN) < range[1];
+  return new Set([...raw.t].filter((_, i) => !inside(i)));
+};
 
 const appendPoints = (
   into: ChannelEnvelope,
   raw: Envelope,
   { map }: Conversion,
-  range: Range,
+  doubted: readonly ReadonlySet<number>[],
 ): void => {
   const rising = isRising(map);
   raw.t.forEach((t, i) => {
-    const [low, mid, high] = [raw.min[i] ?? NaN, raw.mean[i] ?? NaN, raw.max[i] ?? NaN];
-    const believed = within(range, low, high);
-    const at = (x: number) => (believed ? apply(map, x) : null);
+    const believed = !doubted.some((times) => times.has(t));
+    const at = (x: number | undefined) => (believed && x !== undefined ? apply(map, x) : null);
     into.t.push(t);
-    into.min.push(at(rising ? low : high));
-    into.mean.push(at(mid));
-    into.max.push(at(rising ? high : low));
+    into.min.push(at(rising ? raw.min[i] : raw.max[i]));
+    into.mean.push(at(raw.mean[i]));
+    into.max.push(at(rising ? raw.max[i] : raw.min[i]));
   });
 };
 
@@ -66,13 +76,18 @@ export const channelEnvelope = async (
   const { node, input } = plan.channel;
   for (const window of windows(plan, from, to)) {
     const { excitation } = window.conversion;
-    const raw = await store.envelope({
-      series: { node, input, over: excitation },
+    const query = {
       from: epochSeconds(window.from),
       to: epochSeconds(window.to),
       points: Math.max(1, Math.round((window.to - window.from) / step)),
-    });
-    appendPoints(result, raw, window.conversion, excitation === null ? plan.range : null);
+    };
+    const doubted = [await overRange(store, node, input, plan.range, query)];
+    if (excitation !== null) {
+      const range = plan.excitationRange(excitation);
+      doubted.push(await overRange(store, node, excitation, range, query));
+    }
+    const raw = await store.envelope({ ...query, series: { node, input, over: excitation } });
+    appendPoints(result, raw, window.conversion, doubted);
   }
   return result;
 };

@@ -11,7 +11,12 @@ export type Signal =
   | { readonly kind: 'ratio' }
   | { readonly kind: 'volts'; readonly excitation: Excitation }
   /** `(count − zeroCount) · perCount` is V/V. */
-  | { readonly kind: 'counts'; readonly as: 'ratio'; readonly perCount: number; readonly zeroCount: number }
+  | {
+      readonly kind: 'counts';
+      readonly as: 'ratio';
+      readonly perCount: number;
+      readonly zeroCount: number;
+    }
   /** `(count − zeroCount) · perCount` is V. */
   | {
       readonly kind: 'counts';

@@ -44,8 +44,7 @@ export interface Refusal {
 }
 
 export type Result<T> =
-  | { readonly ok: true; readonly value: T }
-  | { readonly ok: false; readonly refusal: Refusal };
+  { readonly ok: true; readonly value: T } | { readonly ok: false; readonly refusal: Refusal };
 
 export const refuse = (
   code: string,

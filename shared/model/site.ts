@@ -1,6 +1,15 @@
 import type { CalibrationRecord } from './calibration.ts';
 import type { Limit } from './limit.ts';
-import type { CubicMetre, Metre, Newton, Pascal, QuarticMetre, Seconds, Share, SquareMetre } from './units.ts';
+import type {
+  CubicMetre,
+  Metre,
+  Newton,
+  Pascal,
+  QuarticMetre,
+  Seconds,
+  Share,
+  SquareMetre,
+} from './units.ts';
 
 /** A cross-section; axes as EN 1993-1-1 §1.7: y–y strong, z–z weak. */
 export interface Section {

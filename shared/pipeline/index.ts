@@ -58,17 +58,15 @@ export const planSite = (site: Site): SitePlan => {
     site.nodes.map((node) => [node.id, new Map(node.inputs.map((i) => [i.name, i.range]))]),
   );
   const rangeOf = (node: string, input: string): Range => ranges.get(node)?.get(input) ?? null;
-  const channels = channelsOf(site).map(
-    ({ channel, member }, index): ChannelPlan => ({
-      index,
-      channel,
-      member,
-      context: limitContextOf(channel, member, site),
-      conversions: channel.calibration.map(conversionOf),
-      range: rangeOf(channel.node, channel.input),
-      excitationRange: (input) => rangeOf(channel.node, input),
-    }),
-  );
+  const channels = channelsOf(site).map(({ channel, member }, index): ChannelPlan => ({
+    index,
+    channel,
+    member,
+    context: limitContextOf(channel, member, site),
+    conversions: channel.calibration.map(conversionOf),
+    range: rangeOf(channel.node, channel.input),
+    excitationRange: (input) => rangeOf(channel.node, input),
+  }));
   const readers = new Map<string, Map<string, ChannelPlan[]>>();
   for (const plan of channels) {
     const inputs = readers.get(plan.channel.node) ?? new Map<string, ChannelPlan[]>();

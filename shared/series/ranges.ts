@@ -26,6 +26,9 @@ export const include = (ranges: Ranges, n: number): Ranges => {
 
 /** Numbers between the first and the last of the set that are not in it. */
 export const missing = (ranges: Ranges): number =>
-  ranges.reduce((sum, [first], i) => sum + (i === 0 ? 0 : first - (ranges[i - 1]?.[1] ?? 0) - 1), 0);
+  ranges.reduce(
+    (sum, [first], i) => sum + (i === 0 ? 0 : first - (ranges[i - 1]?.[1] ?? 0) - 1),
+    0,
+  );
 
 export const highest = (ranges: Ranges): number => ranges.at(-1)?.[1] ?? -1;

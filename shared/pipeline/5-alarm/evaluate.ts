@@ -10,8 +10,6 @@ import type { Threshold } from './threshold.ts';
 export interface LimitState {
   readonly phase: 'normal' | 'beyond' | 'raised';
   readonly since: EpochSeconds;
-  /** Time of the last sample seen; a block that begins before it is late. */
-  readonly seenTo: EpochSeconds;
 }
 
 export interface Crossing {
@@ -25,11 +23,7 @@ export interface Evaluation {
   readonly crossings: readonly Crossing[];
 }
 
-export const UNSEEN: LimitState = {
-  phase: 'normal',
-  since: epochSeconds(-Infinity),
-  seenTo: epochSeconds(-Infinity),
-};
+export const UNSEEN: LimitState = { phase: 'normal', since: epochSeconds(-Infinity) };
 
 const NOTHING: readonly Crossing[] = [];
 
@@ -49,17 +43,14 @@ const cannotChange = ({ phase }: LimitState, { min, max }: ChannelBlock, limit: 
 /**
  * Every sample against one limit. Both sides of zero count alike. A sample that
  * is not believed (NaN) neither raises nor returns, and does not stop a running
- * on-delay. The on-delay has to pass in samples: silence raises nothing.
+ * on-delay. The on-delay has to pass in samples: silence raises nothing. A clock
+ * that steps back starts a running on-delay again.
  */
 export const evaluate = (state: LimitState, block: ChannelBlock, limit: Threshold): Evaluation => {
-  const count = block.values.length;
-  const seenTo = epochSeconds(Math.max(state.seenTo, block.t0 + (count - 1) * block.dt));
-  if (cannotChange(state, block, limit)) {
-    return { state: { ...state, seenTo }, crossings: NOTHING };
-  }
+  if (cannotChange(state, block, limit)) return { state, crossings: NOTHING };
   const crossings: Crossing[] = [];
   let { phase, since } = state;
-  for (let i = 0; i < count; i++) {
+  for (let i = 0; i < block.values.length; i++) {
     const value = block.values[i] ?? NaN;
     if (Number.isNaN(value)) continue;
     const size = Math.abs(value);
@@ -72,7 +63,7 @@ export const evaluate = (state: LimitState, block: ChannelBlock, limit: Threshol
     } else if (size < limit.raise) {
       phase = 'normal';
     } else {
-      if (phase === 'normal') since = at;
+      if (phase === 'normal' || at < since) since = at;
       phase = 'beyond';
       if (at - since < limit.onDelay) continue;
       phase = 'raised';
@@ -80,5 +71,5 @@ export const evaluate = (state: LimitState, block: ChannelBlock, limit: Threshol
       crossings.push({ kind: 'raised', at, value });
     }
   }
-  return { state: { phase, since, seenTo }, crossings };
+  return { state: { phase, since }, crossings };
 };
