@@ -68,7 +68,13 @@ export const readConfig = (args: readonly string[], folder: string): ConfigResul
   for (const token of tokens) {
     if (token.kind === 'positional') fault(token.value, 'an option', 'a bare word');
     else if (token.kind === 'option' && !(token.name in OPTIONS)) {
-      fault(token.rawName, `one of ${Object.keys(OPTIONS).map((n) => `--${n}`).join(' ')}`, 'unknown');
+      fault(
+        token.rawName,
+        `one of ${Object.keys(OPTIONS)
+          .map((n) => `--${n}`)
+          .join(' ')}`,
+        'unknown',
+      );
     }
   }
   const text = (name: Exclude<keyof typeof OPTIONS, 'help'>): string | undefined => {

@@ -1,5 +1,5 @@
 /** The border of the server: what flow.ts needs of the world, each with siblings that provide it. */
-import type { Frame, InputBlock, Result } from '../shared/model/frame.ts';
+import type { Frame, InputBlock, Refusal, Result } from '../shared/model/frame.ts';
 import type { AlarmEvent, Limit } from '../shared/model/limit.ts';
 import type { Site } from '../shared/model/site.ts';
 import type { EpochSeconds } from '../shared/model/units.ts';
@@ -23,6 +23,22 @@ export interface Delivery {
   /** Sends the acknowledgement (QoS 1). Called once: the content is durable, or refused for good. */
   readonly acknowledge: () => void;
 }
+
+/** What a delivery turned out to be. `node` is the one its topic names. */
+export type Message =
+  | {
+      readonly kind: 'samples';
+      readonly node: string;
+      readonly frames: readonly Frame[];
+      /** Of single readings; the others of the same message stand. */
+      readonly refusals: readonly Refusal[];
+    }
+  | { readonly kind: 'status'; readonly node: string; readonly online: boolean }
+  | { readonly kind: 'refused'; readonly node: string; readonly refusal: Refusal }
+  /** Not for us: another topic below our root. */
+  | { readonly kind: 'other' };
+
+export type Decode = (delivery: Delivery) => Message;
 
 /** Where deliveries come from: the embedded broker, or a client of another. */
 export interface FrameSource {

@@ -1,0 +1,89 @@
+import type { Limit } from '../../shared/model/limit.ts';
+import { accept, refuse } from '../../shared/model/frame.ts';
+import type { Site } from '../../shared/model/site.ts';
+import { limitFaults } from '../../shared/pipeline/5-alarm/check-limits.ts';
+import type { ChannelPlan, SitePlan } from '../../shared/pipeline/index.ts';
+import type { Fault, Health, LimitsRequest } from '../../shared/protocol/http.ts';
+import type { Clock, Core, Feed, RecordStore, SampleStore } from '../ports.ts';
+import type { AlarmKeeper } from './alarms.ts';
+import { channelEnvelope } from './history.ts';
+import type { PresentValues } from './present.ts';
+import type { Tally } from './tally.ts';
+
+export interface CoreParts {
+  readonly site: Site;
+  readonly plan: SitePlan;
+  readonly samples: SampleStore;
+  readonly records: RecordStore;
+  readonly tally: Tally;
+  readonly alarms: AlarmKeeper;
+  readonly present: PresentValues;
+  readonly feed: Feed;
+  readonly clock: Clock;
+  readonly health: () => Health;
+  readonly limits: Map<string, readonly Limit[]>;
+}
+
+const LONGEST_TEXT = 500;
+const MOST_POINTS = 20_000;
+
+const textFault = (path: string, text: string): Fault[] =>
+  text.trim() !== '' && text.length <= LONGEST_TEXT
+    ? []
+    : [{ path, expected: `1 to ${LONGEST_TEXT} characters`, came: `${text.length}` }];
+
+/** Answers what screens and scripts ask, and takes what they change. */
+export const createCore = (parts: CoreParts): Core => {
+  const { site, plan, samples, records, tally, alarms, present, feed, clock, limits } = parts;
+  const planOf = (id: string): ChannelPlan | undefined =>
+    plan.channels.find(({ channel }) => channel.id === id);
+  const values = () => present.values((node) => tally.isStale(node, clock.now()));
+
+  const setLimits = async (id: string, request: LimitsRequest): Promise<readonly Fault[]> => {
+    const channel = planOf(id);
+    if (!channel) return [{ path: 'channel', expected: 'a channel of the site', came: id }];
+    const faults = [
+      ...limitFaults(request.limits, channel.context),
+      ...textFault('/author', request.author),
+      ...textFault('/reason', request.reason),
+    ];
+    if (faults.length > 0) return faults;
+    const at = clock.now();
+    await records.addLimitChange({ channel: id, at, ...request });
+    limits.set(id, request.limits);
+    const ended = alarms.setLimits(channel, request.limits, at);
+    if (ended.length > 0) await records.addAlarmEvents(ended);
+    feed.limits(id, request.limits);
+    feed.alarms(alarms.list());
+    return [];
+  };
+
+  const core: Core = {
+    site: () => site,
+    health: parts.health,
+    values,
+    alarms: () => alarms.list(),
+    tally: () => tally.report(clock.now()),
+    limits: () => Object.fromEntries(limits),
+    setLimits,
+    snapshot: () => ({
+      now: clock.now(),
+      health: parts.health(),
+      values: values(),
+      alarms: alarms.list(),
+      nodes: tally.report(clock.now()),
+      limits: Object.fromEntries(limits),
+    }),
+    history: async (id, from, to, points) => {
+      const channel = planOf(id);
+      if (!channel) return refuse('unknown-channel', 'channel', 'a channel of the site', id);
+      if (!(from < to)) return refuse('window', 'to', `after from (${from})`, String(to));
+      if (!(Number.isInteger(points) && points >= 1 && points <= MOST_POINTS)) {
+        return refuse('points', 'points', `a whole number, 1 to ${MOST_POINTS}`, String(points));
+      }
+      const envelope = await channelEnvelope(samples, channel, from, to, points);
+      return accept({ channel: id, simulated: site.simulated, from, to, ...envelope });
+    },
+  };
+  return core;
+};
