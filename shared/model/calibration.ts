@@ -56,8 +56,14 @@ export interface BridgeResponse {
   /** Poisson's ratio of the member under the gauge; used by the circuits with Poisson arms. */
   readonly poisson: number;
   readonly leads: Leads;
-  /** Bridge output of the structure's zero state, V/V. Subtracted as strain, after inversion. */
+  /** Bridge output of the structure's zero state, V/V. Taken off as ΔR/R, after inversion. */
   readonly zero: Ratio;
+  /**
+   * Where the unbalance behind the zero lies. gauge: the gauge itself is off its
+   * nominal resistance, so that its change is a share of what it really has
+   * (quarter bridges only). circuit: anywhere else.
+   */
+  readonly unbalance: 'gauge' | 'circuit';
 }
 
 /** A transducer: `(signal − zero) · perUnit` is N, m or °C. */
