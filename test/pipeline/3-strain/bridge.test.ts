@@ -6,7 +6,7 @@ import { ohm, ratio } from '../../../shared/model/units.ts';
 import {
   bridgeOutput,
   bridgeStrain,
-  zeroStrain,
+  zeroChange,
 } from '../../../shared/pipeline/3-strain/bridge.ts';
 import { CIRCUITS } from '../../../shared/pipeline/3-strain/circuits.ts';
 import { leadFault } from '../../../shared/pipeline/3-strain/leads.ts';
