@@ -1,0 +1,25 @@
+import { accept, refuse, type Result } from '../../model/frame.ts';
+import { isMap } from './frame.ts';
+import { show } from './topics.ts';
+
+/** What a node says of itself, retained; its will says the same with `online` false. */
+export interface NodeStatus {
+  readonly online: boolean;
+  readonly boot: string | null;
+  readonly software: string | null;
+}
+
+const LONGEST = 200;
+
+const wordOf = (value: unknown): string | null =>
+  typeof value === 'string' ? value.slice(0, LONGEST) : null;
+
+export const decodeStatus = (parsed: unknown): Result<NodeStatus> => {
+  if (!isMap(parsed)) return refuse('type', '(status)', 'a map', show(parsed));
+  const { v, online, boot, software } = parsed;
+  if (v !== 1) return refuse('version', 'v', '1', show(v));
+  if (typeof online !== 'boolean') return refuse('type', 'online', 'true or false', show(online));
+  return accept({ online, boot: wordOf(boot), software: wordOf(software) });
+};
+
+export const encodeStatus = (status: NodeStatus): object => ({ v: 1, ...status });
