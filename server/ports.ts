@@ -84,13 +84,18 @@ export interface EnvelopeQuery {
   readonly from: EpochSeconds;
   /** Not included. */
   readonly to: EpochSeconds;
-  /** At most so many points come back, at least 1. */
+  /** At least 1; at most one more than so many come back, since points lie on a fixed grid. */
   readonly points: number;
 }
 
-/** Raw envelope: equal-length columns, ascending in time; a stretch without samples has no point. */
+/**
+ * Raw envelope over the finite samples of [from, to): equal-length columns,
+ * ascending in time; a stretch without samples has no point. Points lie on whole
+ * multiples of `step`, which does not depend on where the window begins, and each
+ * is exact for its own stretch within the window.
+ */
 export interface Envelope {
-  /** Time of each point's first instant, s. */
+  /** Where each point begins, s: a multiple of `step`, or the window's own begin. */
   readonly t: Float64Array;
   readonly min: Float64Array;
   readonly mean: Float64Array;

@@ -1,0 +1,54 @@
+import type { AlarmEvent, Limit } from '../../../shared/model/limit.ts';
+import type { LimitChange } from '../../ports.ts';
+import { openFile, type Database } from './schema.ts';
+
+/** What people and alarms wrote. Synchronous: lives on the writer's thread. */
+export class SqliteRecords {
+  readonly #database: Database;
+
+  constructor(folder: string) {
+    this.#database = openFile(folder, 'records');
+  }
+
+  addAlarmEvents(events: readonly AlarmEvent[]): void {
+    const insert = this.#database.prepare(
+      'INSERT OR IGNORE INTO alarm_event VALUES (@id, @channel, @level, @kind, @at, @value, @threshold)',
+    );
+    this.#database.transaction(() => events.forEach((event) => insert.run(event)))();
+  }
+
+  alarmEvents(atMost: number): AlarmEvent[] {
+    return this.#database
+      .prepare('SELECT * FROM alarm_event ORDER BY at DESC, rowid DESC LIMIT ?')
+      .all(atMost) as AlarmEvent[];
+  }
+
+  lastAlarmEvents(): AlarmEvent[] {
+    return this.#database
+      .prepare(
+        'SELECT * FROM alarm_event WHERE rowid IN (SELECT max(rowid) FROM alarm_event AS newest ' +
+          'GROUP BY channel, level) ORDER BY at',
+      )
+      .all() as AlarmEvent[];
+  }
+
+  addLimitChange({ channel, limits, at, author, reason }: LimitChange): void {
+    this.#database
+      .prepare('INSERT INTO limit_change VALUES (NULL, ?, ?, ?, ?, ?)')
+      .run(channel, JSON.stringify(limits), at, author, reason);
+  }
+
+  limitsInForce(): LimitChange[] {
+    const rows = this.#database
+      .prepare(
+        'SELECT channel, limits, at, author, reason FROM limit_change ' +
+          'WHERE id IN (SELECT max(id) FROM limit_change GROUP BY channel)',
+      )
+      .all() as (Omit<LimitChange, 'limits'> & { limits: string })[];
+    return rows.map((row) => ({ ...row, limits: JSON.parse(row.limits) as Limit[] }));
+  }
+
+  close(): void {
+    this.#database.close();
+  }
+}
