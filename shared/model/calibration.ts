@@ -39,11 +39,13 @@ export type BridgeCircuit =
   | 'full-axial-poisson'
   | 'full-torsion';
 
-/** Resistance is of one conductor. */
+/** Resistance is of one conductor; every gauge of a half bridge is wired alike. */
 export type Leads =
+  /** None worth counting, or sensed away by the instrument. */
   | { readonly kind: 'none' }
   /** Both conductors in the gauge's arm; `trimmed` if the adjacent arm holds as much. */
   | { readonly kind: 'two-wire'; readonly resistance: Ohm; readonly trimmed: boolean }
+  /** One conductor in the gauge's arm, one in the adjacent arm, the third in the output. */
   | { readonly kind: 'three-wire'; readonly resistance: Ohm }
   /** Full bridge whose excitation drops along two conductors. */
   | { readonly kind: 'excitation'; readonly resistance: Ohm };
@@ -56,14 +58,11 @@ export interface BridgeResponse {
   /** Poisson's ratio of the member under the gauge; used by the circuits with Poisson arms. */
   readonly poisson: number;
   readonly leads: Leads;
-  /** Bridge output of the structure's zero state, V/V. Taken off as ΔR/R, after inversion. */
-  readonly zero: Ratio;
   /**
-   * Where the unbalance behind the zero lies. gauge: the gauge itself is off its
-   * nominal resistance, so that its change is a share of what it really has
-   * (quarter bridges only). circuit: anywhere else.
+   * Bridge output of the structure's zero state, V/V. Taken off as ΔR/R, after inversion,
+   * with what the unbalance behind it does to the bridge's sensitivity accounted for.
    */
-  readonly unbalance: 'gauge' | 'circuit';
+  readonly zero: Ratio;
 }
 
 /** A transducer: `(signal − zero) · perUnit` is N, m or °C. */

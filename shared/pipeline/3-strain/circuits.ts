@@ -4,74 +4,34 @@ import type { BridgeCircuit } from '../../model/calibration.ts';
  * Every circuit here obeys `r = B·d / (4 + N·d)` exactly, with d = GF·ε of arm 1
  * and r the bridge output over the excitation. Arms in a ring 1-2-3-4, supply
  * across (1|4) and (2|3): adjacent arms subtract, opposite arms add.
- * B: bridge factor. N: non-linearity, 0 for a circuit that is linear.
  * Source: r = R1/(R1+R2) − R4/(R3+R4) with each circuit's arms put in; Dally and
  * Riley, Experimental Stress Analysis, the Wheatstone bridge.
  */
 export interface Circuit {
-  /** Changes of arms 1 to 4 as multiples of d. */
-  readonly arms: (poisson: number) => readonly [number, number, number, number];
+  /** B for the Poisson's ratio of the member. */
   readonly bridgeFactor: (poisson: number) => number;
+  /** N for the Poisson's ratio of the member; 0 where the circuit is linear. */
   readonly nonlinearity: (poisson: number) => number;
-  readonly usesPoisson: boolean;
-  readonly gauges: 1 | 2 | 4;
 }
 
+const linear = () => 0;
+
+/** Behind each circuit the changes of its arms 1 to 4. */
 export const CIRCUITS: Readonly<Record<BridgeCircuit, Circuit>> = {
-  quarter: {
-    arms: () => [1, 0, 0, 0],
-    bridgeFactor: () => 1,
-    nonlinearity: () => 2,
-    usesPoisson: false,
-    gauges: 1,
-  },
-  'half-poisson': {
-    arms: (nu) => [1, -nu, 0, 0],
-    bridgeFactor: (nu) => 1 + nu,
-    nonlinearity: (nu) => 2 * (1 - nu),
-    usesPoisson: true,
-    gauges: 2,
-  },
-  'half-bending': {
-    arms: () => [1, -1, 0, 0],
-    bridgeFactor: () => 2,
-    nonlinearity: () => 0,
-    usesPoisson: false,
-    gauges: 2,
-  },
-  'half-opposite': {
-    arms: () => [1, 0, 1, 0],
-    bridgeFactor: () => 2,
-    nonlinearity: () => 2,
-    usesPoisson: false,
-    gauges: 2,
-  },
-  'full-bending': {
-    arms: () => [1, -1, 1, -1],
-    bridgeFactor: () => 4,
-    nonlinearity: () => 0,
-    usesPoisson: false,
-    gauges: 4,
-  },
-  'full-bending-poisson': {
-    arms: (nu) => [1, -1, nu, -nu],
-    bridgeFactor: (nu) => 2 * (1 + nu),
-    nonlinearity: () => 0,
-    usesPoisson: true,
-    gauges: 4,
-  },
-  'full-axial-poisson': {
-    arms: (nu) => [1, -nu, 1, -nu],
-    bridgeFactor: (nu) => 2 * (1 + nu),
-    nonlinearity: (nu) => 2 * (1 - nu),
-    usesPoisson: true,
-    gauges: 4,
-  },
-  'full-torsion': {
-    arms: () => [1, -1, 1, -1],
-    bridgeFactor: () => 4,
-    nonlinearity: () => 0,
-    usesPoisson: false,
-    gauges: 4,
-  },
+  /** d, 0, 0, 0 */
+  quarter: { bridgeFactor: () => 1, nonlinearity: () => 2 },
+  /** d, −ν·d, 0, 0 */
+  'half-poisson': { bridgeFactor: (nu) => 1 + nu, nonlinearity: (nu) => 2 * (1 - nu) },
+  /** d, −d, 0, 0 */
+  'half-bending': { bridgeFactor: () => 2, nonlinearity: linear },
+  /** d, 0, d, 0 */
+  'half-opposite': { bridgeFactor: () => 2, nonlinearity: () => 2 },
+  /** d, −d, d, −d */
+  'full-bending': { bridgeFactor: () => 4, nonlinearity: linear },
+  /** d, −d, ν·d, −ν·d */
+  'full-bending-poisson': { bridgeFactor: (nu) => 2 * (1 + nu), nonlinearity: linear },
+  /** d, −ν·d, d, −ν·d */
+  'full-axial-poisson': { bridgeFactor: (nu) => 2 * (1 + nu), nonlinearity: (nu) => 2 * (1 - nu) },
+  /** d, −d, d, −d with d = GF·γ/2: gauges at ±45° */
+  'full-torsion': { bridgeFactor: () => 4, nonlinearity: linear },
 };

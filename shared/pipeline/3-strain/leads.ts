@@ -1,57 +1,57 @@
 import type { BridgeCircuit, Leads } from '../../model/calibration.ts';
-import { affine, IDENTITY, type FractionalLinear } from '../../model/fractional-linear.ts';
 import type { Ohm } from '../../model/units.ts';
-import { CIRCUITS } from './circuits.ts';
 
-const ADMITTED: Readonly<Record<1 | 2 | 4, readonly Leads['kind'][]>> = {
-  1: ['none', 'two-wire', 'three-wire'],
-  2: ['none', 'three-wire'],
-  4: ['none', 'excitation'],
+const nameOf = (leads: Leads): string =>
+  leads.kind === 'two-wire' ? `two-wire ${leads.trimmed ? 'trimmed' : 'untrimmed'}` : leads.kind;
+
+const ONE_GAUGE_A_HALF = ['none', 'two-wire trimmed', 'two-wire untrimmed', 'three-wire'];
+/** The adjacent arm is a gauge as well: its own two wires hold as much. */
+const TWO_GAUGES_A_HALF = ['none', 'two-wire trimmed', 'three-wire'];
+const FULL = ['none', 'excitation'];
+
+const ADMITTED: Readonly<Record<BridgeCircuit, readonly string[]>> = {
+  quarter: ONE_GAUGE_A_HALF,
+  'half-poisson': TWO_GAUGES_A_HALF,
+  'half-bending': TWO_GAUGES_A_HALF,
+  'half-opposite': ONE_GAUGE_A_HALF,
+  'full-bending': FULL,
+  'full-bending-poisson': FULL,
+  'full-axial-poisson': FULL,
+  'full-torsion': FULL,
 };
 
-/** Leads that a circuit cannot have, or null. */
+/** Leads for which a circuit has no exact model, or null where it has one. */
 export const leadFault = (
   circuit: BridgeCircuit,
   leads: Leads,
 ): { expected: string; came: string } | null => {
-  const admitted =
-    circuit === 'half-opposite' ? (['none'] as const) : ADMITTED[CIRCUITS[circuit].gauges];
-  return admitted.some((kind) => kind === leads.kind)
+  const admitted = ADMITTED[circuit];
+  const came = nameOf(leads);
+  return admitted.includes(came)
     ? null
-    : { expected: `${admitted.join(', ')} with a ${circuit} bridge`, came: leads.kind };
+    : { expected: `${admitted.join(', ')} with a ${circuit} bridge`, came };
 };
 
 /**
- * True bridge output r from that seen at the instrument: the excitation of a
- * full bridge drops along two conductors, Rb/(Rb + 2·RL). A full bridge of equal
- * arms has Rb = Rg.
+ * What d = ΔR/Rg of the gauge is over the d that the circuit's exact inversion gives, at least 1.
+ * Leads share the resistance of the arms they lie in: with three wires one conductor in each of
+ * two adjacent arms, with two trimmed ones two. In r = B·d/(4k + N·d) of a full bridge, k is the
+ * same factor: its resistance, Rg·(1 + N·d/4), divides the excitation with two conductors. Two
+ * untrimmed wires only add to the arm's ΔR, and the factor is 1.
  */
-export const excitationDrop = (leads: Leads, gaugeResistance: Ohm): FractionalLinear =>
-  leads.kind === 'excitation'
-    ? affine((gaugeResistance + 2 * leads.resistance) / gaugeResistance)
-    : IDENTITY;
-
-/**
- * True d = ΔR/Rg from that of the whole arm. Leads in an arm share its
- * resistance: with three wires one conductor lies in each of two adjacent arms,
- * with two trimmed ones both in the gauge's and as much in the adjacent arm.
- * With two wires untrimmed the bridge is unbalanced by them and the zero, taken
- * off after the exact inversion, removes that: d stays whole.
- */
-export const leadDesensitisation = (leads: Leads, gaugeResistance: Ohm): FractionalLinear => {
+export const leadFactor = (leads: Leads, gaugeResistance: Ohm): number => {
   switch (leads.kind) {
     case 'none':
-    case 'excitation':
-      return IDENTITY;
+      return 1;
     case 'three-wire':
-      return affine((gaugeResistance + leads.resistance) / gaugeResistance);
+      return (gaugeResistance + leads.resistance) / gaugeResistance;
     case 'two-wire':
-      return leads.trimmed
-        ? affine((gaugeResistance + 2 * leads.resistance) / gaugeResistance)
-        : IDENTITY;
+      return leads.trimmed ? (gaugeResistance + 2 * leads.resistance) / gaugeResistance : 1;
+    case 'excitation':
+      return (gaugeResistance + 2 * leads.resistance) / gaugeResistance;
   }
 };
 
-/** ΔR/Rg by which two untrimmed wires put a quarter bridge out of balance. */
+/** ΔR/Rg that two untrimmed wires add to the arm, and so to the zero; else 0. */
 export const leadUnbalance = (leads: Leads, gaugeResistance: Ohm): number =>
   leads.kind === 'two-wire' && !leads.trimmed ? (2 * leads.resistance) / gaugeResistance : 0;

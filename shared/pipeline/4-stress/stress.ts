@@ -22,7 +22,10 @@ export const stressPerStrain = (measurand: Measurand, material: Material): Pasca
   }
 };
 
-/** Yield in the measurand's kind of stress: fy, or fy/√3 in shear (von Mises; EN 1993-1-1 §6.2.6). */
+/**
+ * Yield in the measurand's kind of stress: fy, or fy/√3 in shear by the von Mises criterion;
+ * EN 1993-1-1:2005 §6.2.1(5), §6.2.6(4). null for what is no strain.
+ */
 export const yieldFor = (measurand: Measurand, material: Material): Pascal | null => {
   switch (measurand) {
     case 'strain':

@@ -32,6 +32,29 @@ describe('2.5 mV at 5 V, however the node states it, is 0.5 mV/V', () => {
   });
 });
 
+test('a sagging excitation leaves the ratio alone where it is measured, and not where it is stated', () => {
+  const measured = signalMap({ kind: 'volts', excitation: MEASURED });
+  const stated = signalMap({ kind: 'volts', excitation: FIVE });
+  for (const supply of [5, 4.5, 3]) {
+    const output = 0.5e-3 * supply;
+    expect(apply(measured, output / supply)).toBeCloseTo(0.5e-3, 15);
+    expect(apply(stated, output)).toBeCloseTo((0.5e-3 * supply) / 5, 15);
+  }
+});
+
+test('counts over a measured excitation: only the gain is left to apply', () => {
+  const perCount = 0.02 / 2 ** 23;
+  const signal: Signal = {
+    kind: 'counts',
+    as: 'volts',
+    perCount,
+    zeroCount: 0,
+    excitation: MEASURED,
+  };
+  expect(excitationInput(signal)).toBe('ex');
+  expect(apply(signalMap(signal), 2.25e-3 / perCount / 4.5)).toBeCloseTo(0.5e-3, 15);
+});
+
 test('a transducer that states its SI unit is taken as it is', () => {
   expect(apply(signalMap({ kind: 'direct' }), 18.5)).toBe(18.5);
 });
@@ -44,9 +67,15 @@ test('which input measures the excitation', () => {
 
 test('a zero count with a measured excitation is refused: it cannot be taken off a quotient', () => {
   const counts = (zeroCount: number): Signal => ({
-    ...{ kind: 'counts', as: 'volts', perCount: 1e-9, excitation: MEASURED },
+    kind: 'counts',
+    as: 'volts',
+    perCount: 1e-9,
     zeroCount,
+    excitation: MEASURED,
   });
   expect(signalFault(counts(0))).toBeNull();
-  expect(signalFault(counts(7))).toMatchObject({ came: '7' });
+  expect(signalFault(counts(7))).toEqual({
+    expected: 'a zero count of 0 with a measured excitation',
+    came: '7',
+  });
 });

@@ -1,73 +1,57 @@
 /**
- * A Wheatstone bridge solved as a resistor network by nodal analysis (Kirchhoff's
- * current law, Gaussian elimination): independent of every formula of the product.
+ * A resistor network solved by nodal analysis: Kirchhoff's current law at every
+ * free node, Gaussian elimination. Independent of every formula of the product.
  */
-export interface Network {
-  /** Whole resistances of the four arms, leads included, Ω. */
-  readonly arms: readonly [number, number, number, number];
-  /** Of each of the two conductors that bring the excitation, Ω. */
-  readonly supplyLead: number;
-}
+export type Resistor = readonly [from: string, to: string, ohm: number];
 
-const solve = (matrix: number[][], right: number[]): number[] => {
-  const n = right.length;
-  const rows = matrix.map((row, i) => [...row, right[i] ?? 0]);
+/** Solves `rows`, each the coefficients of one equation and its right side. */
+const eliminate = (rows: number[][]): number[] => {
+  const n = rows.length;
+  const at = (i: number, j: number): number => rows[i]?.[j] ?? NaN;
   for (let k = 0; k < n; k++) {
-    const pivot = rows
-      .slice(k)
-      .reduce(
-        (best, row, i) => (Math.abs(row[k] ?? 0) > Math.abs(rows[best]?.[k] ?? 0) ? k + i : best),
-        k,
-      );
+    let pivot = k;
+    for (let i = k + 1; i < n; i++) if (Math.abs(at(i, k)) > Math.abs(at(pivot, k))) pivot = i;
     [rows[k], rows[pivot]] = [rows[pivot] ?? [], rows[k] ?? []];
-    const top = rows[k] ?? [];
     for (let i = k + 1; i < n; i++) {
-      const row = rows[i] ?? [];
-      const factor = (row[k] ?? 0) / (top[k] ?? 1);
-      for (let j = k; j <= n; j++) row[j] = (row[j] ?? 0) - factor * (top[j] ?? 0);
+      const factor = at(i, k) / at(k, k);
+      rows[i] = (rows[i] ?? []).map((value, j) => (j < k ? value : value - factor * at(k, j)));
     }
   }
   const x = new Array<number>(n).fill(0);
   for (let i = n - 1; i >= 0; i--) {
-    const row = rows[i] ?? [];
-    const rest = row.slice(i + 1, n).reduce((sum, c, j) => sum + c * (x[i + 1 + j] ?? 0), 0);
-    x[i] = ((row[n] ?? 0) - rest) / (row[i] ?? 1);
+    let rest = at(i, n);
+    for (let j = i + 1; j < n; j++) rest -= at(i, j) * (x[j] ?? NaN);
+    x[i] = rest / at(i, i);
   }
   return x;
 };
 
-/**
- * Output over supply. Nodes: 0 the supply's minus, kept at 0 V; P plus end of the
- * bridge; Q minus end; A between arms 1 and 2; B between arms 4 and 3. The supply
- * of 1 V stands behind the plus conductor.
- */
-export const nodalOutput = ({ arms, supplyLead }: Network): number => {
-  const [r1, r2, r3, r4] = arms;
-  // A lead of none at all would be a short in the matrix; a nano-ohm stands for it.
-  const lead = Math.max(supplyLead, 1e-9);
-  const [g1, g2, g3, g4, gl] = [1 / r1, 1 / r2, 1 / r3, 1 / r4, 1 / lead];
-  // Ring 1-2-3-4: arm 1 from P to A, arm 2 from A to Q, arm 3 from Q to B, arm 4 from B to P.
-  // Unknowns P, Q, A, B. The output that is positive for arm 1 in tension is V(B) − V(A).
-  const [p, q, a, b] = [0, 1, 2, 3];
-  const matrix = Array.from({ length: 4 }, () => [0, 0, 0, 0]);
-  const branch = (i: number, j: number, g: number) => {
-    const add = (k: number, l: number, value: number) => {
-      const row = matrix[k];
-      if (row) row[l] = (row[l] ?? 0) + value;
+/** Voltage of every node, V; `held` are the nodes that a supply keeps at a voltage. */
+export const nodeVoltages = (
+  resistors: readonly Resistor[],
+  held: Readonly<Record<string, number>>,
+): ReadonlyMap<string, number> => {
+  const free = [...new Set(resistors.flatMap(([from, to]) => [from, to]))].filter(
+    (node) => !(node in held),
+  );
+  const rows = free.map((node) => {
+    const row = new Array<number>(free.length + 1).fill(0);
+    const add = (column: number, value: number) => {
+      row[column] = (row[column] ?? 0) + value;
     };
-    add(i, i, g);
-    add(j, j, g);
-    add(i, j, -g);
-    add(j, i, -g);
-  };
-  branch(p, a, g1);
-  branch(a, q, g2);
-  branch(q, b, g3);
-  branch(b, p, g4);
-  const rowP = matrix[p];
-  const rowQ = matrix[q];
-  if (rowP) rowP[p] = (rowP[p] ?? 0) + gl;
-  if (rowQ) rowQ[q] = (rowQ[q] ?? 0) + gl;
-  const v = solve(matrix, [gl, 0, 0, 0]);
-  return (v[b] ?? NaN) - (v[a] ?? NaN);
+    for (const [from, to, ohm] of resistors) {
+      if (from !== node && to !== node) continue;
+      const other = from === node ? to : from;
+      add(free.indexOf(node), 1 / ohm);
+      const voltage = held[other];
+      if (voltage === undefined) add(free.indexOf(other), -1 / ohm);
+      else add(free.length, voltage / ohm);
+    }
+    return row;
+  });
+  const voltages = eliminate(rows);
+  return new Map([
+    ...Object.entries(held),
+    ...free.map((node, i): [string, number] => [node, voltages[i] ?? NaN]),
+  ]);
 };
