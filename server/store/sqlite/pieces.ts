@@ -75,6 +75,15 @@ export class FrameReader {
     return unpackBody(this.layout(row.layout).layout, bytes, row.count);
   }
 
+  /** Where a series stands in the summaries of a layout; −1 where it does not. */
+  #place(layout: number, { input, over }: SeriesInputs): number {
+    const { series } = this.layout(layout);
+    for (let i = 0; i < series.length; i++) {
+      if (series[i]?.input === input && series[i]?.over === over) return i;
+    }
+    return -1;
+  }
+
   /** A frame's samples in [from, to), cut at the multiples of `step`. */
   *pieces(
     row: FrameRow,
@@ -87,15 +96,12 @@ export class FrameReader {
     const end = sampleAt(row, to);
     if (first >= end) return;
     const pointOf = (i: number) => Math.floor((row.t0 + i * row.dt) / step);
-    const { series } = this.layout(row.layout);
-    const place = series.findIndex((s) => s.input === key.input && s.over === key.over);
+    const place = this.#place(row.layout, key);
     const whole = first === 0 && end === row.count && pointOf(0) === pointOf(end - 1);
     if (whole && place >= 0) {
-      const [min = Infinity, max = -Infinity, sum = 0, count = 0] = new Float64Array(
-        new Uint8Array(row.summary).buffer,
-        place * SUMMARY_FIGURES * 8,
-        SUMMARY_FIGURES,
-      );
+      const at = place * SUMMARY_FIGURES * 8;
+      const figure = (i: number) => row.summary.readDoubleLE(at + 8 * i);
+      const [min, max, sum, count] = [figure(0), figure(1), figure(2), figure(3)];
       yield { t: row.t0, summary: { min, max, sum, count } };
       return;
     }

@@ -12,12 +12,10 @@ interface Source {
   readonly series: number | null;
 }
 
-/** Points finer than two whole-second buckets are made from frames. */
-const FINEST_BUCKETS = 2;
-
+/** Two buckets a point waste little by rounding to whole buckets; below a bucket, frames are read. */
 const levelFor = (step: number): number => {
-  let k = -1;
-  while (k + 1 < LEVELS && bucketWidth(k + 1) * FINEST_BUCKETS <= step) k++;
+  let k = step >= bucketWidth(0) ? 0 : -1;
+  while (k + 1 < LEVELS && 2 * bucketWidth(k + 1) <= step) k++;
   return k;
 };
 
