@@ -1,0 +1,69 @@
+import { mkdtempSync, rmSync } from 'node:fs';
+import { tmpdir } from 'node:os';
+import { join } from 'node:path';
+import { afterAll, expect, test } from 'vitest';
+import { openSqliteStores } from '../../server/store/sqlite/open.ts';
+import type { AlarmEvent, Limit } from '../../shared/model/limit.ts';
+import { epochSeconds, seconds } from '../../shared/model/units.ts';
+
+const root = mkdtempSync(join(tmpdir(), 'yieldward-records-'));
+afterAll(() => rmSync(root, { recursive: true, force: true }));
+
+const event = (kind: AlarmEvent['kind'], at: number, level: AlarmEvent['level'] = 'stop') => ({
+  ...{ id: `c1/${level}/${kind}/${at}`, channel: 'c1', level, kind },
+  ...{ at: epochSeconds(at), value: 1e-3, threshold: 0.9e-3 },
+});
+
+const limits: Limit[] = [
+  { level: 'stop', basis: 'share', value: 0.75, deadband: 0.01, onDelay: seconds(0.2) },
+];
+
+test('alarm events and limit changes stay, each once, across a restart', async () => {
+  const folder = join(root, 'a');
+  const first = await openSqliteStores(folder, {});
+  await first.records.addAlarmEvents([event('raised', 10), event('returned', 12)]);
+  await first.records.addAlarmEvents([event('raised', 10), event('raised', 20, 'caution')]);
+  const change = { channel: 'c1', at: epochSeconds(5), author: 'A', reason: 'first' };
+  await first.records.addLimitChange({ ...change, limits });
+  await first.records.addLimitChange({ ...change, limits: [], reason: 'none for now' });
+  await first.records.addLimitChange({ ...change, channel: 'c2', limits });
+  await first.records.close();
+  await first.samples.close();
+
+  const again = await openSqliteStores(folder, {});
+  expect((await again.records.alarmEvents(10)).map(({ kind, at }) => [kind, at])).toEqual([
+    ...[
+      ['raised', 20],
+      ['returned', 12],
+      ['raised', 10],
+    ],
+  ]);
+  expect(await again.records.alarmEvents(1)).toEqual([event('raised', 20, 'caution')]);
+  expect((await again.records.lastAlarmEvents()).map(({ level, kind }) => [level, kind])).toEqual([
+    ...[
+      ['stop', 'returned'],
+      ['caution', 'raised'],
+    ],
+  ]);
+  const inForce = await again.records.limitsInForce();
+  expect(inForce.map(({ channel, reason, limits: set }) => [channel, reason, set.length])).toEqual([
+    ...[
+      ['c1', 'none for now', 0],
+      ['c2', 'first', 1],
+    ],
+  ]);
+  await again.samples.close();
+  await again.records.close();
+});
+
+test('a store that a newer version wrote is not touched, and says so', async () => {
+  const folder = join(root, 'b');
+  const store = await openSqliteStores(folder, {});
+  await store.records.close();
+  await store.samples.close();
+  const { default: Database } = await import('better-sqlite3');
+  const file = new Database(join(folder, 'samples.sqlite'));
+  file.pragma('user_version = 99');
+  file.close();
+  await expect(openSqliteStores(folder, {})).rejects.toThrow(/version 99.*newer Yieldward/);
+});
