@@ -2,6 +2,7 @@
 import type { Fault } from '../model/fault.ts';
 import type { AlarmEvent, Limit } from '../model/limit.ts';
 import type { Quality } from '../model/block.ts';
+import type { Measurand } from '../model/site.ts';
 
 export interface Health {
   readonly ok: boolean;
@@ -18,6 +19,33 @@ export interface CurrentValue {
   readonly value: number | null;
   readonly at: number | null;
   readonly quality: Quality | 'stale' | 'none';
+}
+
+/** A channel, where it sits and what it reads now; limits are those in force. */
+export interface ChannelReport {
+  readonly id: string;
+  readonly name: string;
+  readonly structure: string;
+  readonly member: string;
+  readonly station: string;
+  readonly measurand: Measurand;
+  /** SI unit of its figures. */
+  readonly unit: 'm/m' | 'N' | 'm' | 'Cel';
+  readonly node: string;
+  readonly input: string;
+  readonly limits: readonly Limit[];
+  readonly current: CurrentValue;
+}
+
+export interface ChannelAnswer {
+  readonly simulated: boolean;
+  readonly channel: ChannelReport;
+}
+
+export interface ChannelsAnswer {
+  readonly simulated: boolean;
+  /** In site order. */
+  readonly channels: readonly ChannelReport[];
 }
 
 /**
@@ -76,6 +104,15 @@ export interface AlarmList {
   readonly active: readonly ActiveAlarm[];
   /** Newest first. */
   readonly recent: readonly AlarmEvent[];
+}
+
+export interface AlarmsAnswer extends AlarmList {
+  readonly simulated: boolean;
+}
+
+export interface TallyAnswer {
+  readonly simulated: boolean;
+  readonly nodes: readonly NodeTally[];
 }
 
 export interface LimitsRequest {

@@ -42,7 +42,7 @@ export interface LiveValue {
 const COLUMNS = 6;
 
 /** Six float64 in the machine's order (little-endian on all that Node and browsers run on) a value. */
-export const packLive = (values: readonly LiveValue[]): Float64Array => {
+export const packLive = (values: readonly LiveValue[]): Float64Array<ArrayBuffer> => {
   const packed = new Float64Array(values.length * COLUMNS);
   values.forEach((v, i) => {
     packed.set([v.channel, v.at, v.last, v.min, v.max, QUALITIES.indexOf(v.quality)], i * COLUMNS);
