@@ -1,0 +1,166 @@
+import type {
+  BridgeCircuit,
+  BridgeResponse,
+  Leads,
+  LinearResponse,
+  Response,
+  Signal,
+} from '../../shared/model/calibration.ts';
+import type { InputUnit, Material, Measurand } from '../../shared/model/site.ts';
+import { millivoltPerVoltToRatio, ohm } from '../../shared/model/units.ts';
+import { leadFault } from '../../shared/pipeline/3-strain/leads.ts';
+import type { Reading } from './reading.ts';
+
+type LeadsOfFile =
+  | { readonly kind: 'none' }
+  | { readonly kind: 'two-wire'; readonly resistance_ohm: number; readonly trimmed: boolean }
+  | { readonly kind: 'three-wire' | 'excitation'; readonly resistance_ohm: number };
+
+interface BridgeOfFile {
+  readonly circuit: BridgeCircuit;
+  readonly gauge_factor: number;
+  readonly gauge_resistance_ohm: number;
+  readonly poisson?: number;
+  readonly leads: LeadsOfFile;
+  readonly zero_mV_per_V: number;
+}
+
+interface LinearOfFile {
+  readonly rated_signal: number;
+  readonly signal_unit: 'mV/V' | 'V' | 'count';
+  readonly rated_value: number;
+  readonly value_unit: 'kN' | 'mm' | 'Cel';
+  readonly zero_signal: number;
+}
+
+/** What a response is read for. */
+export interface ResponseContext {
+  readonly measurand: Measurand;
+  readonly signal: Signal | null;
+  readonly inputUnit: InputUnit | undefined;
+  /** null: at fault. */
+  readonly material: Material | null;
+}
+
+/** Of what is measured by transducers: the unit in the file, that unit in SI, and the SI unit itself. */
+const TRANSDUCERS = {
+  force: { unit: 'kN', si: 1e3, own: 'N' },
+  displacement: { unit: 'mm', si: 1e-3, own: 'm' },
+  temperature: { unit: 'Cel', si: 1, own: 'Cel' },
+} as const;
+
+type TransducerMeasurand = keyof typeof TRANSDUCERS;
+
+const SIGNAL_SI = { 'mV/V': 1e-3, V: 1, count: 1 } as const;
+
+const leadsOf = (file: LeadsOfFile): Leads => {
+  switch (file.kind) {
+    case 'none':
+      return { kind: 'none' };
+    case 'two-wire':
+      return { kind: 'two-wire', resistance: ohm(file.resistance_ohm), trimmed: file.trimmed };
+    case 'three-wire':
+    case 'excitation':
+      return { kind: file.kind, resistance: ohm(file.resistance_ohm) };
+  }
+};
+
+const readBridge = (reading: Reading, at: string, context: ResponseContext): Response | null => {
+  const { measurand, signal, material } = context;
+  if (signal?.kind === 'direct') {
+    reading.fault(`${at}/kind`, 'linear or as-is with a direct signal', 'bridge');
+  }
+  const circuit = reading.value<BridgeCircuit>(`${at}/circuit`);
+  if (circuit !== undefined && (circuit === 'full-torsion') !== (measurand === 'shear')) {
+    const expected =
+      measurand === 'shear' ? 'full-torsion for shear' : 'no full-torsion for strain';
+    reading.fault(`${at}/circuit`, expected, circuit);
+  }
+  const leadsFile = reading.value<LeadsOfFile>(`${at}/leads`);
+  if (circuit !== undefined && leadsFile) {
+    const fault = leadFault(circuit, leadsOf(leadsFile));
+    if (fault) reading.fault(`${at}/leads`, fault.expected, fault.came);
+  }
+  const file = reading.value<BridgeOfFile>(at);
+  const poisson = file?.poisson ?? material?.poisson;
+  if (!file || poisson === undefined) return null;
+  return {
+    kind: 'bridge',
+    circuit: file.circuit,
+    gaugeFactor: file.gauge_factor,
+    gaugeResistance: ohm(file.gauge_resistance_ohm),
+    poisson,
+    leads: leadsOf(file.leads),
+    zero: millivoltPerVoltToRatio(file.zero_mV_per_V),
+  } satisfies BridgeResponse;
+};
+
+/** The unit of what a signal hands to a transducer's line; null where it hands the value itself. */
+const signalUnit = (signal: Signal, inputUnit: InputUnit): LinearOfFile['signal_unit'] | null => {
+  if (signal.kind !== 'direct') return 'mV/V';
+  return inputUnit === 'V' || inputUnit === 'count' ? inputUnit : null;
+};
+
+const readLinear = (
+  reading: Reading,
+  at: string,
+  measurand: TransducerMeasurand,
+  { signal, inputUnit }: ResponseContext,
+): LinearResponse | null => {
+  const valueUnit = reading.value<string>(`${at}/value_unit`);
+  const { unit, si } = TRANSDUCERS[measurand];
+  if (valueUnit !== undefined && valueUnit !== unit) {
+    reading.faultAt(`${at}/value_unit`, `"${unit}" for ${measurand}`);
+  }
+  if (signal && inputUnit !== undefined) {
+    const needed = signalUnit(signal, inputUnit);
+    const given = reading.value<string>(`${at}/signal_unit`);
+    if (needed === null)
+      reading.fault(`${at}/kind`, `as-is with an input in ${inputUnit}`, 'linear');
+    else if (given !== undefined && given !== needed) {
+      reading.faultAt(`${at}/signal_unit`, `"${needed}" with this signal`);
+    }
+  }
+  const file = reading.value<LinearOfFile>(at);
+  if (!file) return null;
+  const signalSi = SIGNAL_SI[file.signal_unit];
+  const perUnit = (file.rated_value * si) / (file.rated_signal * signalSi);
+  return { kind: 'linear', perUnit, zero: file.zero_signal * signalSi };
+};
+
+const readAsIs = (
+  reading: Reading,
+  at: string,
+  measurand: TransducerMeasurand,
+  { signal, inputUnit }: ResponseContext,
+): LinearResponse => {
+  const { own } = TRANSDUCERS[measurand];
+  if (signal && inputUnit !== undefined && inputUnit !== own) {
+    reading.fault(
+      `${at}/kind`,
+      `as-is for ${measurand} with an input in ${own} only`,
+      `an input in ${inputUnit}`,
+    );
+  }
+  return { kind: 'linear', perUnit: 1, zero: 0 };
+};
+
+/** A response that fits the measurand and the signal; null where something is at fault. */
+export const readResponse = (
+  reading: Reading,
+  at: string,
+  context: ResponseContext,
+): Response | null => {
+  const kind = reading.value<'bridge' | 'linear' | 'as-is'>(`${at}/kind`);
+  if (kind === undefined) return null;
+  const { measurand } = context;
+  if (measurand === 'strain' || measurand === 'shear') {
+    if (kind === 'bridge') return readBridge(reading, at, context);
+    reading.faultAt(`${at}/kind`, `"bridge" for ${measurand}`);
+    return null;
+  }
+  if (kind === 'linear') return readLinear(reading, at, measurand, context);
+  if (kind === 'as-is') return readAsIs(reading, at, measurand, context);
+  reading.faultAt(`${at}/kind`, `"linear" or "as-is" for ${measurand}`);
+  return null;
+};

@@ -1,0 +1,79 @@
+import type { Elevation, Structure } from '../../shared/model/site.ts';
+import { kilonewtonToNewton } from '../../shared/model/units.ts';
+import type { SiteContext } from './channels.ts';
+import { readMember } from './members.ts';
+import { Names } from './names.ts';
+import type { Reading } from './reading.ts';
+
+const readElevation = (
+  reading: Reading,
+  at: string,
+  structure: string,
+  names: Names,
+  { members }: SiteContext,
+): Elevation[] => {
+  names.add(`${at}/name`, true);
+  const shown = new Names(reading, 'member of the elevation');
+  for (const pointer of reading.items(`${at}/members`)) {
+    shown.add(pointer, true);
+    const member = members.refer(pointer);
+    if (member && member.structure !== structure) {
+      reading.faultAt(pointer, 'a member of the same structure');
+    }
+  }
+  const elevation = reading.value<Elevation>(at);
+  return elevation ? [elevation] : [];
+};
+
+const checkLoadChannel = (reading: Reading, structure: string, { channels }: SiteContext) => {
+  const at = `${structure}/load_channel`;
+  const channel = channels.refer(at);
+  if (!channel) return;
+  if (channel.measurand !== undefined && channel.measurand !== 'force') {
+    reading.fault(at, 'a force channel', `one of ${channel.measurand}`);
+  }
+  if (channel.structure !== structure) reading.faultAt(at, 'a channel of the same structure');
+};
+
+const readStructure = (
+  reading: Reading,
+  at: string,
+  ids: Names,
+  site: SiteContext,
+): (() => Structure[]) => {
+  ids.add(`${at}/id`, true);
+  if (!reading.isList(`${at}/members`)) {
+    site.members.incomplete();
+    site.channels.incomplete();
+  }
+  const members = reading
+    .items(`${at}/members`)
+    .flatMap((pointer) => readMember(reading, pointer, at, site));
+  return () => {
+    const names = new Names(reading, 'elevation of the structure');
+    const elevations = reading
+      .items(`${at}/elevations`)
+      .flatMap((pointer) => readElevation(reading, pointer, at, names, site));
+    checkLoadChannel(reading, at, site);
+    const id = reading.value<string>(`${at}/id`);
+    const name = reading.value<string>(`${at}/name`);
+    const load = reading.value<number>(`${at}/safe_working_load_kN`);
+    if (id === undefined || name === undefined) return [];
+    return [
+      {
+        ...{ id, name, members, elevations },
+        loadChannel: reading.value<string>(`${at}/load_channel`) ?? null,
+        safeWorkingLoad: load === undefined ? null : kilonewtonToNewton(load),
+      },
+    ];
+  };
+};
+
+/** The site's structures; what refers to members and channels is read when all of them are known. */
+export const readStructures = (reading: Reading, site: SiteContext): readonly Structure[] => {
+  const ids = new Names(reading, 'structure');
+  return reading
+    .items('/structures')
+    .map((at) => readStructure(reading, at, ids, site))
+    .flatMap((finish) => finish());
+};
