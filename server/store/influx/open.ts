@@ -9,6 +9,7 @@ import type {
   Stored,
   StoredFrame,
 } from '../../ports.ts';
+import type { SeriesInputs } from '../sqlite/summary.ts';
 import type { Pairs } from '../sqlite/writer.ts';
 import {
   bootKey,
@@ -107,27 +108,33 @@ class InfluxStore implements SampleStore {
   async #write(fresh: readonly StoredFrame[]): Promise<void> {
     const lanes = await this.#lanes.assign(fresh, this.#boots);
     const laneOf = (stored: StoredFrame) => lanes.get(stored) ?? 0;
-    const pairsOf = ({ frame }: StoredFrame) =>
-      Object.hasOwn(this.#pairs, frame.node) ? (this.#pairs[frame.node] ?? []) : [];
-    const pointOf = (stored: StoredFrame) => framePoint(stored, laneOf(stored), pairsOf(stored));
+    const pointOf = (stored: StoredFrame) =>
+      framePoint(stored, laneOf(stored), this.#pairsOf(stored));
     const touched = new Map<string, Boot>();
     for (const stored of fresh) {
       const key = bootKey(stored.frame.node, stored.frame.boot);
       touched.set(key, withFrame(touched.get(key) ?? this.#boots.get(key), stored));
     }
     await this.#database.write(fresh.filter(({ frame }) => frame.sequenced).map(pointOf));
-    await this.#database.write(
-      fresh.flatMap((stored) => [
-        ...rawPoints(stored, laneOf(stored)),
-        ...blockPoints(stored, laneOf(stored), pairsOf(stored)),
-      ]),
-    );
+    await this.#database.write(this.#samplePoints(fresh, laneOf));
     // A single reading counts from its frame on; its tally may lag behind by one commit.
     await this.#database.write([
       ...fresh.filter(({ frame }) => !frame.sequenced).map(pointOf),
       ...[...touched.values()].map(bootPoint),
     ]);
     this.#boots = new Map([...this.#boots, ...touched]);
+  }
+
+  /** Made as they are written: a backlog at once is millions. */
+  *#samplePoints(fresh: readonly StoredFrame[], laneOf: (stored: StoredFrame) => number) {
+    for (const stored of fresh) {
+      yield* rawPoints(stored, laneOf(stored));
+      yield* blockPoints(stored, laneOf(stored), this.#pairsOf(stored));
+    }
+  }
+
+  #pairsOf({ frame }: StoredFrame): readonly SeriesInputs[] {
+    return Object.hasOwn(this.#pairs, frame.node) ? (this.#pairs[frame.node] ?? []) : [];
   }
 
   /** Keys of those single readings among `frames` that are in store. */
