@@ -1,5 +1,12 @@
 import type { Material } from '../model/site.ts';
-import { gigapascalToPascal, ksiToPascal, megapascalToPascal, type Metre } from '../model/units.ts';
+import {
+  gigapascalToPascal,
+  ksiToPascal,
+  megapascalToPascal,
+  pascalToMegapascal,
+  type Metre,
+  type Pascal,
+} from '../model/units.ts';
 import { absent, found, plainName, type Found } from './lookup.ts';
 
 /** Yield (or 0.2 % proof) strength up to and including a thickness, mm. */
@@ -13,7 +20,7 @@ interface Grade {
 }
 
 interface Family {
-  readonly youngsModulus: number;
+  readonly youngsModulus: Pascal;
   readonly poisson: number;
   readonly expansion: number;
 }
@@ -37,13 +44,14 @@ const bands = (limits: readonly number[], yields: readonly number[]): Band[] =>
 
 /** Limits of EN 10025-2 Table 7: an upper limit belongs to the band below it. */
 const EN_10025 = [16, 40, 63, 80, 100, 150, 200, 250];
-const EN_10025_2 = 'EN 10025-2:2004 Table 7, minimum ReH by nominal thickness';
-const EN_1993_1_1 = 'EN 1993-1-1:2005 Table 3.1, simplified';
+const EN_10025_2 =
+  'EN 10025-2:2004 Table 7, minimum ReH by nominal thickness (above 100 mm from memory)';
+const EN_1993_1_1 = 'EN 1993-1-1:2005 Table 3.1, simplified (S460 from memory)';
 const EN_1993_1_4 = 'EN 1993-1-4 Table 2.1 (value from memory)';
 const EN_1999_1_1 = 'EN 1999-1-1 Table 3.2 (value from memory)';
 const ASTM = (standard: string) => `${standard}, minimum yield (value from memory)`;
 
-const ksi = (n: number) => ksiToPascal(n) / 1e6;
+const ksi = (n: number) => pascalToMegapascal(ksiToPascal(n));
 
 const GRADES: readonly Grade[] = [
   {
@@ -65,8 +73,14 @@ const GRADES: readonly Grade[] = [
     bands: bands(EN_10025, [355, 345, 335, 325, 315, 295, 285, 275]),
   },
   {
-    names: ['S460N', 'S460M'],
-    source: 'EN 10025-3 and -4, minimum ReH by nominal thickness',
+    names: ['S460N', 'S460N EN 10025-3'],
+    source: 'EN 10025-3, minimum ReH by nominal thickness (above 100 mm from memory)',
+    family: STEEL,
+    bands: bands(EN_10025, [460, 440, 430, 410, 400, 380, 370]),
+  },
+  {
+    names: ['S460M', 'S460M EN 10025-4'],
+    source: 'EN 10025-4, minimum ReH by nominal thickness',
     family: STEEL,
     bands: bands(EN_10025, [460, 440, 430, 410, 400]),
   },
@@ -75,6 +89,12 @@ const GRADES: readonly Grade[] = [
       ['S235', 235, 215],
       ['S275', 275, 255],
       ['S355', 355, 335],
+      ['S450', 450, 410],
+      ['S275N', 275, 255],
+      ['S355N', 355, 335],
+      ['S420N', 420, 390],
+      ['S460N', 460, 430],
+      ['S460M', 460, 430],
       ['S460Q', 460, 440],
     ] as const
   ).map(([name, thin, thick]): Grade => ({
@@ -119,7 +139,25 @@ const GRADES: readonly Grade[] = [
     family: ALUMINIUM,
     bands: bands([5, 15], [250, 260]),
   },
-  { names: ['6061-T6 sheet'], source: EN_1999_1_1, family: ALUMINIUM, bands: [[12.5, 240]] },
+  {
+    names: ['6082-T6 bar'],
+    source: EN_1999_1_1,
+    family: ALUMINIUM,
+    bands: bands([20, 150], [250, 260]),
+  },
+  {
+    names: ['6061-T6 sheet', '6061-T6 plate'],
+    source: EN_1999_1_1,
+    family: ALUMINIUM,
+    bands: [[80, 240]],
+  },
+  { names: ['6061-T6 extruded'], source: EN_1999_1_1, family: ALUMINIUM, bands: [[20, 240]] },
+  {
+    names: ['ASTM 6061-T6 sheet', 'ASTM 6061-T6 extruded'],
+    source: `${ASTM('ASTM B209, B221')}; E as EN 1999-1-1`,
+    family: ALUMINIUM,
+    bands: [[25, ksi(35)]],
+  },
   { names: ['ASTM A36'], source: ASTM('ASTM A36'), family: STEEL_US, bands: [[200, ksi(36)]] },
   { names: ['ASTM A992'], source: ASTM('ASTM A992'), family: STEEL_US, bands: [[150, ksi(50)]] },
   {
@@ -134,7 +172,8 @@ export const gradeNames = (): string[] => GRADES.flatMap(({ names }) => [...name
 
 /** A grade at a thickness (m): its yield strength is that of the band the thickness lies in. */
 export const material = (grade: string, thickness: Metre): Found<Material> => {
-  const entry = GRADES.find(({ names }) => names.some((n) => plainName(n) === plainName(grade)));
+  const isMeant = (name: string) => plainName(name) === plainName(grade);
+  const entry = GRADES.find(({ names }) => names.some(isMeant));
   if (!entry) return absent(`a grade of the catalogue: ${gradeNames().join(', ')}`);
   // Thicknesses are typed in mm; a metre figure of them may be off by a rounding.
   const millimetres = Number((thickness * 1e3).toPrecision(9));
@@ -143,11 +182,10 @@ export const material = (grade: string, thickness: Metre): Found<Material> => {
   if (!(millimetres > 0) || !band) {
     return absent(`a thickness above 0 and up to ${most} mm for ${grade} (${entry.source})`);
   }
-  const { youngsModulus, poisson, expansion } = entry.family;
   return found({
-    designation: entry.names[0] ?? grade,
+    designation: entry.names.find(isMeant) ?? grade,
     source: entry.source,
-    ...{ youngsModulus: megapascalToPascal(youngsModulus / 1e6), poisson, expansion },
+    ...entry.family,
     yieldStrength: megapascalToPascal(band[1]),
   });
 };

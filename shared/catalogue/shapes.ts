@@ -103,6 +103,6 @@ export const circularHollow = (designation: string, d: number, t: number): Secti
 /** Flat bars and plates, `h` upright, mm. */
 export const flat = (designation: string, h: number, t: number): Section =>
   section(designation, 'rectangle', {
-    ...{ height: h, width: t, thickness: t, area: h * t },
+    ...{ height: h, width: t, thickness: Math.min(h, t), area: h * t },
     ...{ inertiaY: (t * h ** 3) / 12, inertiaZ: (h * t ** 3) / 12 },
   });
