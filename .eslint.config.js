@@ -41,6 +41,8 @@ export default tseslint.config(
         'error',
         { argsIgnorePattern: '^_', varsIgnorePattern: '^_' },
       ],
+      // Branded figures are numbers.
+      '@typescript-eslint/no-unsafe-unary-minus': 'off',
       // Ports promise; an implementation may have nothing to wait for.
       '@typescript-eslint/require-await': 'off',
       '@typescript-eslint/switch-exhaustiveness-check': [

@@ -15,6 +15,8 @@ export type SquareMetre = Quantity<'m2'>;
 export type CubicMetre = Quantity<'m3'>;
 export type QuarticMetre = Quantity<'m4'>;
 export type Newton = Quantity<'N'>;
+/** A bending moment. */
+export type NewtonMetre = Quantity<'N m'>;
 export type Pascal = Quantity<'Pa'>;
 export type Volt = Quantity<'V'>;
 export type Ohm = Quantity<'Ohm'>;
@@ -33,6 +35,7 @@ export const squareMetre = (n: number) => n as SquareMetre;
 export const cubicMetre = (n: number) => n as CubicMetre;
 export const quarticMetre = (n: number) => n as QuarticMetre;
 export const newton = (n: number) => n as Newton;
+export const newtonMetre = (n: number) => n as NewtonMetre;
 export const pascal = (n: number) => n as Pascal;
 export const volt = (n: number) => n as Volt;
 export const ohm = (n: number) => n as Ohm;

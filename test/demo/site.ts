@@ -1,0 +1,12 @@
+import { loadSite } from '../../server/site/load.ts';
+import { packageFile } from '../../server/package-root.ts';
+import type { Site } from '../../shared/model/site.ts';
+
+export const SITE_FILE = packageFile('server', 'demo', 'site.json');
+
+/** The demo's site, as the server reads it. */
+export const demoSite = async (): Promise<Site> => {
+  const read = await loadSite(SITE_FILE);
+  if (!read.ok) throw new Error(JSON.stringify(read.faults));
+  return read.site;
+};
