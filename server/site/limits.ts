@@ -75,7 +75,11 @@ export const readLimits = (
   if (!context) return limits;
   for (const { path, expected, came } of limitFaults(limits, context)) {
     const [, , place = '', field = ''] = path.split('/');
-    reading.fault(`${read[Number(place)]?.pointer ?? at}/${field}`, expected, came);
+    const pointer = read[Number(place)]?.pointer ?? at;
+    const typed = reading.value<LimitOfFile>(pointer);
+    // The stage's figures are SI: beside them, what stands in the file.
+    const inFile = typed && field === 'value' ? `${typed.value} as ${typed.basis}, ` : '';
+    reading.fault(`${pointer}/${field}`, expected, inFile + came);
   }
   return limits;
 };

@@ -108,7 +108,7 @@ const readStation = (
   site.stations.add(`${at}/id`, true);
   const id = reading.value<string>(`${at}/id`);
   const place = reading.value<number>(`${at}/at_m`);
-  if (place !== undefined && length !== null && place > length + LENGTH_TOLERANCE) {
+  if (place !== undefined && length && place > length + LENGTH_TOLERANCE) {
     const metres = Number(length.toPrecision(6));
     reading.faultAt(`${at}/at_m`, `at most ${metres} m, the length of the member`);
   }

@@ -13,7 +13,7 @@ export class Names<T = true> {
     this.#what = what;
   }
 
-  /** Some name could not be read: from now on an unknown reference is not known to be wrong. */
+  /** Some name is not known: an unknown reference may mean it, and is no fault of its own. */
   incomplete(): void {
     this.#complete = false;
   }
@@ -25,6 +25,8 @@ export class Names<T = true> {
     const first = this.#entries.get(name);
     if (!first) this.#entries.set(name, { pointer, entry });
     else {
+      // One of the two was to be called something else, which others may refer to.
+      this.incomplete();
       const came = `${show(name)}, as at ${first.pointer}`;
       this.#reading.fault(pointer, `each ${this.#what} once`, came);
     }

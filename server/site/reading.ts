@@ -17,17 +17,22 @@ export const fieldOf = (value: unknown, key: string): unknown =>
  */
 export class Reading {
   readonly faults: Fault[];
-  readonly #json: unknown;
+  readonly #resolved: Map<string, unknown>;
   readonly #misshapen: readonly string[];
 
   constructor(json: unknown, shapeFaults: readonly Fault[]) {
-    this.#json = json;
+    this.#resolved = new Map([['', json]]);
     this.#misshapen = shapeFaults.map(({ path }) => path);
     this.faults = [...shapeFaults];
   }
 
+  /** Of pointers made by `items` and plain field names: nothing in them is escaped. */
   #at(pointer: string): unknown {
-    return pointer.split('/').slice(1).reduce(fieldOf, this.#json);
+    if (this.#resolved.has(pointer)) return this.#resolved.get(pointer);
+    const cut = pointer.lastIndexOf('/');
+    const value = fieldOf(this.#at(pointer.slice(0, cut)), pointer.slice(cut + 1));
+    this.#resolved.set(pointer, value);
+    return value;
   }
 
   #isSound(pointer: string): boolean {

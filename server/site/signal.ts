@@ -85,12 +85,13 @@ export const readSignal = (
   input: { readonly name: string | undefined; readonly unit: InputUnit | undefined },
   node: NodeEntry | undefined,
 ): Signal | null => {
+  checkMeasuredExcitation(reading, at, input.name, node);
   const kind = reading.value<SignalOfFile['kind']>(`${at}/kind`);
   if (kind !== undefined && input.unit !== undefined && !KINDS[input.unit].includes(kind)) {
     const kinds = KINDS[input.unit].join(', ');
     reading.faultAt(`${at}/kind`, `${kinds} with an input in ${input.unit}`);
+    return null;
   }
-  checkMeasuredExcitation(reading, at, input.name, node);
   const file = reading.value<SignalOfFile>(at);
   if (!file) return null;
   const signal = signalOf(file);
