@@ -7,7 +7,7 @@ import {
   type Metre,
   type Pascal,
 } from '../model/units.ts';
-import { absent, found, plainName, type Found } from './lookup.ts';
+import { absent, found, nearNames, plainName, type Found } from './lookup.ts';
 
 /** Yield (or 0.2 % proof) strength up to and including a thickness, mm. */
 type Band = readonly [upTo: number, yieldMegapascal: number];
@@ -174,7 +174,7 @@ export const gradeNames = (): string[] => GRADES.flatMap(({ names }) => [...name
 export const material = (grade: string, thickness: Metre): Found<Material> => {
   const isMeant = (name: string) => plainName(name) === plainName(grade);
   const entry = GRADES.find(({ names }) => names.some(isMeant));
-  if (!entry) return absent(`a grade of the catalogue: ${gradeNames().join(', ')}`);
+  if (!entry) return absent(`a grade of the catalogue: ${nearNames(grade, gradeNames())}`);
   // Thicknesses are typed in mm; a metre figure of them may be off by a rounding.
   const millimetres = Number((thickness * 1e3).toPrecision(9));
   const band = entry.bands.find(([upTo]) => millimetres <= upTo);

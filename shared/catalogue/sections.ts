@@ -1,5 +1,5 @@
 import type { Section } from '../model/site.ts';
-import { absent, found, plainName, type Found } from './lookup.ts';
+import { absent, found, nearNames, plainName, type Found } from './lookup.ts';
 import { AISC, EN_10365 } from './rolled.ts';
 import {
   circularHollow,
@@ -72,5 +72,5 @@ export const section = (designation: string): Found<Section> => {
     const [h = 0, t = 0] = figures(bar, 1, 2);
     if (h > 0 && t > 0) return found(flat(designation, h, t));
   }
-  return absent(`${FORMS}: ${sectionNames().join(', ')}`);
+  return absent(`${FORMS}: ${nearNames(designation, sectionNames())}`);
 };

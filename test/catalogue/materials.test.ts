@@ -122,9 +122,11 @@ test.each([
   expect(at(grade, 12).youngsModulus / 1e9).toBeCloseTo(199.95, 1);
 });
 
-test('an unknown grade lists the known, a thickness out of the table its range', () => {
-  const unknown = material('S999', millimetreToMetre(10));
+test('an unknown grade lists the near ones, a thickness out of the table its range', () => {
+  const unknown = material('S276', millimetreToMetre(10));
   expect(unknown.ok ? '' : unknown.expected).toContain('S275');
+  const lost = material('oak', millimetreToMetre(10));
+  for (const name of gradeNames()) expect(lost.ok ? '' : lost.expected).toContain(name);
   const thick = material('S275', millimetreToMetre(300));
   expect(thick.ok ? '' : thick.expected).toContain('up to 250 mm');
   expect(material('S275', millimetreToMetre(0)).ok).toBe(false);

@@ -107,8 +107,13 @@ test('a flat bar is as thick as its smaller side, whichever way it stands', () =
 });
 
 test('what is not there says what there is', () => {
-  const result = section('HE 999 Z');
-  expect(result.ok ? '' : result.expected).toContain('HE 300 B');
+  const meant = (name: string) => {
+    const result = section(name);
+    return result.ok ? '' : result.expected;
+  };
+  expect(meant('HE 310 B')).toContain('HE 300 B');
+  expect(meant('HE 310 B')).not.toContain('IPE');
+  expect(meant('')).toContain('UC 254x254x73');
   expect(section('CHS 50x40').ok).toBe(false);
   expect(section('RHS 20x20x9 hot').ok).toBe(false);
   expect(section('SHS 100x80x5 hot').ok).toBe(false);
