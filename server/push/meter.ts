@@ -8,7 +8,7 @@ export interface Rate {
   readonly burst: number;
 }
 
-/** Generic cell rate algorithm, virtual scheduling (ITU-T I.371 Annex A). */
+/** Generic cell rate algorithm, virtual scheduling (ITU-T I.371). */
 export class Meter {
   readonly #rate: Rate;
   /** When the next message would be due if they came evenly. */

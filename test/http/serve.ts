@@ -1,6 +1,8 @@
 import { once } from 'node:events';
+import { mkdirSync } from 'node:fs';
 import { createServer, request, type IncomingHttpHeaders } from 'node:http';
 import type { AddressInfo } from 'node:net';
+import { join } from 'node:path';
 import { text } from 'node:stream/consumers';
 import { onTestFinished } from 'vitest';
 import { createHttp } from '../../server/http/http.ts';
@@ -35,7 +37,8 @@ export interface Served {
 /** The real HTTP side on a free port, over a plain core and an empty page folder. */
 export const serve = async (over: Partial<Core> = {}, host = '127.0.0.1'): Promise<Served> => {
   const core = plainCore(over);
-  const folder = temporaryFolder();
+  const folder = join(temporaryFolder(), 'page');
+  mkdirSync(folder);
   const complaints: string[] = [];
   const app = createHttp({
     core,
