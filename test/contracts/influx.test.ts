@@ -1,7 +1,9 @@
 import { afterAll, beforeAll } from 'vitest';
 import { openInfluxStore } from '../../server/store/influx/open.ts';
+import type { Pairs } from '../../server/store/sqlite/writer.ts';
 import { startInfluxd, type Influxd } from '../helpers/influxd.ts';
 import { describeSampleStore, PAIRS } from './sample-store.ts';
+import { testNames } from './store-names.ts';
 
 let influxd: Influxd;
 beforeAll(async () => {
@@ -10,11 +12,14 @@ beforeAll(async () => {
 afterAll(() => influxd.close());
 
 let places = 0;
-const open = (place: string) =>
-  openInfluxStore({ url: `influx+http://${influxd.host}/${place}`, pairs: PAIRS });
+const newPlace = () => `place_${places++}`;
+const open = (place: string, pairs: Pairs) =>
+  openInfluxStore({ url: `influx+http://${influxd.host}/${place}`, pairs });
 
 describeSampleStore('InfluxDB 1.x', {
-  newPlace: async () => `place_${places++}`,
-  open,
+  newPlace: async () => newPlace(),
+  open: (place) => open(place, PAIRS),
   runs: 10,
 });
+
+testNames('InfluxDB 1.x', open, newPlace);

@@ -3,24 +3,31 @@ import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { afterAll } from 'vitest';
 import { openSqliteStores } from '../../server/store/sqlite/open.ts';
+import type { Pairs } from '../../server/store/sqlite/writer.ts';
 import { describeSampleStore, PAIRS } from './sample-store.ts';
+import { testNames } from './store-names.ts';
 
 const root = mkdtempSync(join(tmpdir(), 'yieldward-sqlite-'));
 afterAll(() => rmSync(root, { recursive: true, force: true }));
 
 let places = 0;
 
+const newPlace = () => join(root, String(places++));
+const open = async (place: string, pairs: Pairs) => {
+  const { samples, records } = await openSqliteStores(place, pairs);
+  return {
+    ...samples,
+    close: async () => {
+      await records.close();
+      await samples.close();
+    },
+  };
+};
+
 describeSampleStore('SQLite on its threads', {
-  newPlace: async () => join(root, String(places++)),
-  open: async (place) => {
-    const { samples, records } = await openSqliteStores(place, PAIRS);
-    return {
-      ...samples,
-      close: async () => {
-        await records.close();
-        await samples.close();
-      },
-    };
-  },
+  newPlace: async () => newPlace(),
+  open: (place) => open(place, PAIRS),
   runs: 15,
 });
+
+testNames('SQLite on its threads', open, newPlace);

@@ -1,26 +1,14 @@
 import type { Envelope, EnvelopeQuery, SeriesKey } from '../../ports.ts';
 import { emptySummary, merge, summarise, type Summary } from '../sqlite/summary.ts';
+import { stepFor } from '../step.ts';
 import type { Boots } from './boots.ts';
 import { quoted, type Database } from './database.ts';
 import { framesIn, samplesOf } from './frames.ts';
 import { nanosText, readTime, toSeconds } from './time.ts';
 
-/** Steps are whole multiples of a power of 4 s, down to 2⁻²⁰ s, a few times a time's own resolution. */
-const SMALLEST = -10;
-const LARGEST = 12;
-/** From 2⁻⁸ s on, every multiple is whole in ns: the database can group by it. */
-const LEAST_GROUPED = 4 ** -4;
+/** The database groups by whole nanoseconds only. */
+const isGroupable = (step: number): boolean => Number.isInteger(step * 1e9);
 const BLOCK = 1;
-/** How much longer than asked for a step may come out. */
-const WASTE = 4 / 3;
-
-export const stepFor = (asked: number): number => {
-  for (let k = LARGEST; k >= SMALLEST; k--) {
-    const step = Math.ceil(asked / 4 ** k) * 4 ** k;
-    if (step <= asked * WASTE) return step;
-  }
-  return Math.ceil(asked / 4 ** SMALLEST) * 4 ** SMALLEST;
-};
 
 class Points {
   readonly #by = new Map<number, Summary>();
@@ -134,7 +122,7 @@ export const readEnvelope = async (
   const step = stepFor((to - from) / atMost);
   const task: Task = { database, boots, series, step, points: new Points(step) };
   const addRaw = (a: number, b: number) =>
-    series.over === null && step >= LEAST_GROUPED
+    series.over === null && isGroupable(step)
       ? addGrouped(task, a, b, 'raw')
       : addSamples(task, a, b);
   const [first, end] = [Math.ceil(from / BLOCK) * BLOCK, Math.floor(to / BLOCK) * BLOCK];

@@ -1,5 +1,6 @@
 import { epochSeconds } from '../../../shared/model/units.ts';
 import type { Envelope, EnvelopeQuery, RawRun, SampleQuery, SeriesKey } from '../../ports.ts';
+import { stepFor } from '../step.ts';
 import { bucketWidth, LEVELS } from './levels.ts';
 import { FrameReader, type Piece } from './pieces.ts';
 import { openFile, type Database } from './schema.ts';
@@ -12,10 +13,10 @@ interface Source {
   readonly series: number | null;
 }
 
-/** Two buckets a point waste little by rounding to whole buckets; below a bucket, frames are read. */
+/** The widest buckets that a point is made of whole ones; −1 below whole seconds: frames are read. */
 const levelFor = (step: number): number => {
-  let k = step >= bucketWidth(0) ? 0 : -1;
-  while (k + 1 < LEVELS && 2 * bucketWidth(k + 1) <= step) k++;
+  let k = -1;
+  while (k + 1 < LEVELS && step % bucketWidth(k + 1) === 0) k++;
   return k;
 };
 
@@ -35,15 +36,13 @@ export class SqliteReader {
   }
 
   /**
-   * Points lie on whole multiples of a step that is itself, from 2 s on, a whole
+   * Points lie on whole multiples of a step that is itself, from 1 s on, a whole
    * multiple of a bucket's width; each covers just the samples of its own stretch
    * within [from, to).
    */
   envelope({ series: key, from, to, points }: EnvelopeQuery): Envelope {
-    const asked = (to - from) / points;
-    const k = levelFor(asked);
-    const width = bucketWidth(Math.max(k, 0));
-    const step = k < 0 ? asked : Math.ceil(asked / width) * width;
+    const step = stepFor((to - from) / points);
+    const k = levelFor(step);
     const source = this.#source(key, from, to);
     const by = new Map<number, Summary>();
     if (source) {

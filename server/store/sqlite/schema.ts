@@ -54,10 +54,10 @@ export const openFile = (folder: string, which: keyof typeof FILES): Database.Da
   const { file, schema, version } = FILES[which];
   mkdirSync(folder, { recursive: true });
   const database = new Database(join(folder, file));
-  database.pragma('page_size = 8192');
+  database.pragma('page_size = 4096');
   database.pragma('journal_mode = WAL');
   database.pragma('synchronous = FULL');
-  database.pragma('wal_autocheckpoint = 2000');
+  database.pragma('wal_autocheckpoint = 4000');
   database.pragma('cache_size = -16000');
   const found = Number(database.pragma('user_version', { simple: true }));
   if (found > version) {

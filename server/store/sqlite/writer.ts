@@ -1,8 +1,8 @@
 import { include, type Ranges } from '../../../shared/series/ranges.ts';
 import type { BootTally, Stored } from '../../ports.ts';
-import { epochSeconds } from '../../../shared/model/units.ts';
 import { parseLayout, unpackBody } from '../layout.ts';
 import { Levels } from './levels.ts';
+import { retirePairs } from './pairs.ts';
 import { openFile, type Database } from './schema.ts';
 import {
   arraysOf,
@@ -14,6 +14,7 @@ import {
   SUMMARY_FIGURES,
   type SeriesInputs,
 } from './summary.ts';
+import { hasFrame, readTally } from './tally.ts';
 
 /** A frame ready to be written: its samples packed by `packBody`. */
 export interface PackedFrame {
@@ -70,8 +71,8 @@ export class SqliteWriter {
     const prepare = (sql: string) => this.#database.prepare(sql);
     this.#statements = {
       frame: prepare(
-        'INSERT OR IGNORE INTO frame (node, boot, seq, t0, dt, count, arrived, layout, summary) ' +
-          'VALUES (?, ?, ?, ?, ?, ?, ?, ?, ?)',
+        'INSERT INTO frame (node, boot, seq, t0, dt, count, arrived, layout, summary) ' +
+          'VALUES (?, ?, ?, ?, ?, ?, ?, ?, ?) ON CONFLICT (boot, seq) DO NOTHING',
       ),
       body: prepare('INSERT INTO body VALUES (?, ?)'),
       boot: prepare(
@@ -111,39 +112,11 @@ export class SqliteWriter {
   }
 
   has(node: string, boot: string, seq: number): boolean {
-    return (
-      this.#database
-        .prepare(
-          'SELECT 1 FROM frame JOIN boot ON boot.id = frame.boot JOIN node ON node.id = boot.node ' +
-            'WHERE node.name = ? AND boot.name = ? AND seq = ?',
-        )
-        .get(node, boot, seq) !== undefined
-    );
+    return hasFrame(this.#database, node, boot, seq);
   }
 
   tally(): BootTally[] {
-    const rows = this.#database
-      .prepare(
-        'SELECT node.name AS node, boot.name AS boot, sequenced, ranges, frames, samples, ' +
-          'first_arrived, last_arrived FROM boot JOIN node ON node.id = boot.node ORDER BY boot.id',
-      )
-      .all() as {
-      node: string;
-      boot: string;
-      sequenced: number;
-      ranges: string;
-      frames: number;
-      samples: number;
-      first_arrived: number;
-      last_arrived: number;
-    }[];
-    return rows.map(({ first_arrived, last_arrived, sequenced, ranges, ...row }) => ({
-      ...row,
-      sequenced: sequenced === 1,
-      ranges: JSON.parse(ranges) as Ranges,
-      firstArrived: epochSeconds(first_arrived),
-      lastArrived: epochSeconds(last_arrived),
-    }));
+    return readTally(this.#database);
   }
 
   close(): void {
@@ -250,6 +223,12 @@ export class SqliteWriter {
       }
       this.#levels.took(row.id);
     }
+    retirePairs(this.#database, (node) => this.#pairsOf(node));
+  }
+
+  /** A node may bear the name of something that every object inherits. */
+  #pairsOf(node: string): readonly SeriesInputs[] {
+    return Object.hasOwn(this.#pairs, node) ? (this.#pairs[node] ?? []) : [];
   }
 
   #node(name: string): { id: number; longest: number } {
@@ -285,7 +264,7 @@ export class SqliteWriter {
     const known = this.#plans.get(key);
     if (known) return known;
     const inputs = parseLayout(layout);
-    const pairs = this.#pairs[name] ?? [];
+    const pairs = this.#pairsOf(name);
     const pairsText = JSON.stringify(pairs);
     this.#database
       .prepare('INSERT OR IGNORE INTO layout (inputs, pairs) VALUES (?, ?)')
