@@ -27,15 +27,18 @@ const now = (): EpochSeconds => epochSeconds(Date.now() / 1e3);
 
 const isSlow = ({ inputs }: FieldNode): boolean => inputs.every(({ unit }) => unit === 'Cel');
 
-const sendReadings = (node: FieldNode, sampler: Sampler, link: Link) =>
-  eachPeriod(SLOW_PERIOD, 1, () => {
+const sendReadings = (node: FieldNode, sampler: Sampler, link: Link) => {
+  const send = () => {
     const time = now();
     const readings = sampler.block(time, 0, 1).map(({ input, samples }, i) => ({
       ...{ name: `${node.id}/${input}`, time, value: Number((samples[0] ?? NaN).toFixed(2)) },
       unit: node.inputs[i]?.unit ?? '/',
     }));
     link.publish(topicOf(node.id, 'senml/json'), JSON.stringify(encodeSenml(readings, 'json')));
-  });
+  };
+  send();
+  return eachPeriod(SLOW_PERIOD, 1, send);
+};
 
 const sendFrames = (
   node: FieldNode,

@@ -1,8 +1,8 @@
+import { fileURLToPath } from 'node:url';
 import { loadSite } from '../../server/site/load.ts';
-import { packageFile } from '../../server/package-root.ts';
 import type { Site } from '../../shared/model/site.ts';
 
-export const SITE_FILE = packageFile('server', 'demo', 'site.json');
+export const SITE_FILE = fileURLToPath(new URL('../../server/demo/site.json', import.meta.url));
 
 /** The demo's site, as the server reads it. */
 export const demoSite = async (): Promise<Site> => {
