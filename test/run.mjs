@@ -77,5 +77,5 @@ try {
   say(error instanceof StepFailed ? error.message : String(error));
 }
 writeFileSync(SUMMARY, `${summaryLine(tally)}\n`);
-say(summaryLine(tally));
+say(`Tests and checks together: ${summaryLine(tally)}`);
 process.exitCode = exitCode(tally);
