@@ -8,8 +8,10 @@ import type { Decode, Delivery, Message } from '../ports.ts';
 import { readCbor } from './cbor.ts';
 import { readJson } from './json.ts';
 
-/** A message of ours may be this long, bytes; brokers are told the same. */
+/** A message of ours may be this long, bytes; a longer one is refused, counted and done with. */
 export const LONGEST_MESSAGE = 1_048_576;
+/** Past so many bytes a message is not even read. */
+export const LONGEST_READ = 16 * LONGEST_MESSAGE;
 
 const NO_TAGS: ReadonlySet<number> = new Set();
 const EMPTY_NODE = '(no name)';

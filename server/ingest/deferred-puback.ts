@@ -7,10 +7,11 @@ interface Sender {
 
 /**
  * MQTT.js handles one packet after the other and sends a PUBACK as soon as the
- * handler calls back, so that a handler which waits for a commit lets through one
- * message a commit. Here the handler calls back at once and the PUBACK waits apart,
- * by message id, until it is released. One of an earlier connection is dropped:
- * the broker sends that message again.
+ * handler calls back (`customHandleAcks` waits no differently), so that a handler
+ * which waits for a commit lets through one message a commit. Here the handler
+ * calls back at once, and the PUBACK that the library then asks for waits apart
+ * until it is released. A PUBACK goes out on the connection its message came by
+ * or not at all: the broker sends the message again on the next.
  */
 export const deferPubacks = (
   client: MqttClient,
@@ -18,30 +19,32 @@ export const deferPubacks = (
 ): void => {
   const sender = client as unknown as Sender;
   const send = sender._sendPacket.bind(client);
-  const held = new Map<number, Packet>();
-  /** Released before the library asked for the PUBACK, within the handler itself. */
-  const released = new Set<number>();
-  let connection = 0;
-  client.on('connect', () => {
-    connection++;
-    held.clear();
-    released.clear();
-  });
+  /** Takes the PUBACK of the message at hand; the library asks for it within `done`. */
+  let take: ((puback: Packet) => void) | null = null;
   sender._sendPacket = (packet, done, ...rest) => {
-    const id = packet.cmd === 'puback' ? packet.messageId : undefined;
-    if (id === undefined || released.delete(id)) return send(packet, done, ...rest);
-    held.set(id, packet);
+    if (packet.cmd !== 'puback' || take === null) return send(packet, done, ...rest);
+    take(packet);
     done?.();
   };
-  client.handleMessage = (packet, done) => {
-    const [id, from] = [packet.messageId, connection];
-    receive(packet, () => {
-      if (id === undefined || from !== connection || !client.connected) return;
-      const puback = held.get(id);
-      held.delete(id);
-      if (puback) send(puback);
-      else released.add(id);
+  client.handleMessage = (message, done) => {
+    const { stream } = client;
+    let released = false;
+    let puback: Packet | null = null;
+    const sendWhenBoth = () => {
+      if (!released || puback === null) return;
+      const alive = client.stream === stream && client.connected && !client.disconnecting;
+      if (alive) send(puback);
+      puback = null;
+    };
+    receive(message, () => {
+      released = true;
+      sendWhenBoth();
     });
+    take = (packet) => {
+      puback = packet;
+      sendWhenBoth();
+    };
     done();
+    take = null;
   };
 };

@@ -1,17 +1,20 @@
+import type { EventEmitter } from 'node:events';
 import { createServer, type AddressInfo, type Server, type Socket } from 'node:net';
-import { Aedes, type AedesPublishPacket } from 'aedes';
+import { Aedes, type AedesPublishPacket, type Client } from 'aedes';
 import { TOPIC_ROOT } from '../../shared/pipeline/1-decode/topics.ts';
 import type { Clock, Delivery, FrameSource } from '../ports.ts';
-import { LONGEST_MESSAGE } from './decode.ts';
+import { LONGEST_READ } from './decode.ts';
+import { announcedLength, readOn } from './read-on.ts';
 
 export interface EmbeddedBroker extends FrameSource {
   /** The port it listens on, once started. */
   port(): number;
+  /** For people: what it is and where. */
+  description(): string;
 }
 
-/** Messages of one client that may wait for their commit at once: what group commit feeds on. */
+/** While fewer messages of a connection wait for their commit, reading goes on. */
 const UNDER_WAY = 128;
-const HEADERS = 1024;
 
 const bytesOf = (payload: AedesPublishPacket['payload']): Uint8Array =>
   typeof payload === 'string' ? Buffer.from(payload) : payload;
@@ -20,47 +23,85 @@ const bytesOf = (payload: AedesPublishPacket['payload']): Uint8Array =>
  * An MQTT 3.1.1 broker within the process (aedes). A node's publication is handed
  * on before the broker takes it, and the broker's PUBACK waits for that: it goes
  * out when the delivery is acknowledged, that is after the commit. Wills come the
- * same way.
+ * same way. Nothing retained outlives the process.
  */
 export const embeddedBroker = async (options: {
   readonly host: string;
   readonly port: number;
   readonly clock: Clock;
+  readonly say?: (line: string) => void;
 }): Promise<EmbeddedBroker> => {
-  const aedes = await Aedes.createBroker({ concurrency: UNDER_WAY, queueLimit: UNDER_WAY });
+  const { host, clock, say } = options;
+  const aedes = await Aedes.createBroker({ queueLimit: UNDER_WAY });
+  (aedes as EventEmitter).on('error', (error: Error) => say?.(`broker: ${error.message}`));
+  /** What aedes itself allows: everything but its own $SYS. */
+  const allow = aedes.authorizePublish;
   const sockets = new Set<Socket>();
+  const waiting = new WeakMap<Client, number>();
   let server: Server | null = null;
   let open = false;
 
-  const listen = (receive: (delivery: Delivery) => void): Promise<void> => {
-    aedes.authorizePublish = (_client, packet, done) => {
-      const payload = bytesOf(packet.payload);
-      if (!packet.topic.startsWith(`${TOPIC_ROOT}/`)) return done(null);
-      if (payload.length > LONGEST_MESSAGE + HEADERS) return done(new Error('message too long'));
+  /** Counts a publication that waits; answers how to count it off. */
+  const countIn = (client: Client | null): (() => void) => {
+    if (!client) return () => undefined;
+    const before = waiting.get(client) ?? 0;
+    waiting.set(client, before + 1);
+    if (before + 1 < UNDER_WAY) readOn(client);
+    return () => waiting.set(client, (waiting.get(client) ?? 1) - 1);
+  };
+
+  const handOver = (receive: (delivery: Delivery) => void) => {
+    aedes.authorizePublish = (client, packet, done) => {
+      if (!packet.topic.startsWith(`${TOPIC_ROOT}/`)) return allow(client, packet, done);
+      if (!open) return done(new Error('stopping'));
+      const countOff = countIn(client);
       receive({
-        ...{ topic: packet.topic, payload, retained: packet.retain, arrived: options.clock.now() },
-        acknowledge: () => done(null),
+        topic: packet.topic,
+        payload: bytesOf(packet.payload),
+        retained: false,
+        arrived: clock.now(),
+        acknowledge: () => {
+          countOff();
+          if (open) done(null);
+        },
       });
     };
-    const listening = createServer((socket) => {
-      sockets.add(socket);
-      socket.once('close', () => sockets.delete(socket));
-      aedes.handle(socket);
-    });
-    server = listening;
-    return new Promise((resolve, reject) => {
-      listening.once('error', reject);
-      listening.listen(options.port, options.host, () => {
-        open = true;
-        resolve();
-      });
+  };
+
+  const attend = (socket: Socket) => {
+    sockets.add(socket);
+    socket.once('close', () => sockets.delete(socket));
+    const client = aedes.handle(socket);
+    socket.on('readable', () => {
+      const length = announcedLength(client);
+      if (length <= LONGEST_READ) return;
+      const from = socket.remoteAddress ?? 'unknown';
+      say?.(`broker: cut off ${from}: a message of ${length} bytes is longer than can be read`);
+      socket.destroy();
     });
   };
 
+  const port = () => (server?.address() as AddressInfo | null)?.port ?? options.port;
+
   return {
-    start: listen,
+    start: (receive) => {
+      handOver(receive);
+      const listening = createServer(attend);
+      server = listening;
+      return new Promise((resolve, reject) => {
+        listening.on('error', (error) => {
+          say?.(`broker: ${error.message}`);
+          reject(error);
+        });
+        listening.listen(options.port, host, () => {
+          open = true;
+          resolve();
+        });
+      });
+    },
     connected: () => open,
-    port: () => (server?.address() as AddressInfo | null)?.port ?? options.port,
+    port,
+    description: () => `embedded broker, ${host} port ${port()}, MQTT 3.1.1`,
     stop: async () => {
       open = false;
       const closed = new Promise<void>((resolve) =>
