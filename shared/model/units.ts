@@ -70,3 +70,4 @@ export const ksiToPascal = (n: number) =>
 export const pascalToKsi = (p: Pascal): number =>
   (p * METRE_PER_INCH ** 2) / (1e3 * NEWTON_PER_POUND_FORCE);
 export const celsiusToFahrenheit = (c: Celsius): number => c * 1.8 + 32;
+export const fahrenheitToCelsius = (f: number) => celsius((f - 32) / 1.8);

@@ -1,0 +1,200 @@
+import uPlot from 'uplot';
+import 'uplot/dist/uPlot.min.css';
+
+export type Cell = number | null | undefined;
+
+export interface TrendLine {
+  /** Stands at the line's right end and in the legend. */
+  readonly letter: string;
+  readonly color: string;
+  /** px on, px off; empty: solid */
+  readonly dash: readonly number[];
+  readonly last: readonly Cell[];
+  readonly min: readonly Cell[];
+  readonly max: readonly Cell[];
+}
+
+export interface LimitLine {
+  readonly value: number;
+  readonly label: string;
+  readonly level: 'caution' | 'stop';
+}
+
+/** Everything in the unit that is shown; `times` in s. */
+export interface TrendPicture {
+  readonly times: readonly number[];
+  readonly lines: readonly TrendLine[];
+  readonly limits: readonly LimitLine[];
+  /** Bounds of the drawing. */
+  readonly x: readonly [from: number, to: number];
+  readonly y: readonly [low: number, high: number];
+}
+
+export interface Look {
+  readonly ink: string;
+  readonly soft: string;
+  readonly rule: string;
+  readonly caution: string;
+  readonly stop: string;
+  readonly font: string;
+}
+
+const isFigure = (cell: Cell): cell is number => cell !== null && cell !== undefined;
+
+/** A figure with a gap on both sides, which no line would show. */
+const loneFigures = (cells: readonly Cell[]): number[] => {
+  const lone: number[] = [];
+  let candidate = -1;
+  let run = 0;
+  cells.forEach((cell, i) => {
+    if (cell === undefined) return;
+    if (cell === null) {
+      if (run === 1) lone.push(candidate);
+      run = 0;
+      return;
+    }
+    candidate = i;
+    run++;
+  });
+  return run === 1 ? [...lone, candidate] : lone;
+};
+
+/** 0 to 255 as two hexadecimal digits behind a `#rrggbb`. */
+const faint = (color: string): string => `${color}38`;
+
+/** A drawing of trends: for each line the last figures, and a band from least to greatest. */
+export class TrendChart {
+  readonly #host: HTMLElement;
+  readonly #look: () => Look;
+  #plot: uPlot | null = null;
+  #picture: TrendPicture | null = null;
+  #key = '';
+
+  constructor(host: HTMLElement, look: () => Look) {
+    this.#host = host;
+    this.#look = look;
+  }
+
+  draw(picture: TrendPicture, width: number, height: number): void {
+    this.#picture = picture;
+    const look = this.#look();
+    const key = JSON.stringify([look, picture.lines.map(({ letter, color }) => letter + color)]);
+    if (key !== this.#key || !this.#plot) {
+      this.#plot?.destroy();
+      this.#plot = new uPlot(this.#options(picture, look, width, height), [[]], this.#host);
+      this.#key = key;
+    }
+    const plot = this.#plot;
+    if (plot.width !== width || plot.height !== height) plot.setSize({ width, height });
+    const columns = picture.lines.flatMap(({ last, max, min }) => [last, max, min]);
+    plot.batch(() => {
+      plot.setData([[...picture.times], ...columns.map((c) => [...c])], false);
+      plot.setScale('x', { min: picture.x[0], max: picture.x[1] });
+      plot.setScale('y', { min: picture.y[0], max: picture.y[1] });
+    });
+  }
+
+  destroy(): void {
+    this.#plot?.destroy();
+    this.#plot = null;
+  }
+
+  #options({ lines }: TrendPicture, look: Look, width: number, height: number): uPlot.Options {
+    const axis = { stroke: look.ink, font: look.font, grid: { stroke: look.rule, width: 1 } };
+    const none = { stroke: 'transparent', width: 0, points: { show: false } };
+    return {
+      ...{ width, height, padding: [10, 26, 0, 0] },
+      legend: { show: false },
+      cursor: { show: false },
+      scales: { x: { time: true, auto: false }, y: { auto: false } },
+      axes: [
+        {
+          ...{ ...axis, space: 90 },
+          values: (_plot, splits) =>
+            splits.map((t) => new Date(t * 1e3).toTimeString().slice(0, 8)),
+        },
+        { ...axis, size: 62, values: (_plot, splits) => splits.map(axisText(splits)) },
+      ],
+      series: [
+        {},
+        ...lines.flatMap(({ color, dash }): uPlot.Series[] => [
+          {
+            ...{ stroke: color, width: 2.5, dash: [...dash] },
+            points: {
+              ...{ show: true, size: 6, fill: color },
+              filter: (_plot, place) => loneFigures(lineAt(this.#picture, place)),
+            },
+          },
+          none,
+          none,
+        ]),
+      ],
+      bands: lines.map(({ color }, i) => ({
+        series: [3 * i + 2, 3 * i + 3],
+        fill: faint(color),
+      })),
+      hooks: {
+        drawAxes: [(plot) => this.#drawLimits(plot, look)],
+        draw: [(plot) => this.#drawLetters(plot, look)],
+      },
+    };
+  }
+
+  #drawLimits(plot: uPlot, look: Look): void {
+    const { ctx, bbox } = plot;
+    ctx.save();
+    ctx.font = look.font;
+    ctx.textBaseline = 'bottom';
+    for (const { value, label, level } of this.#picture?.limits ?? []) {
+      const y = Math.round(plot.valToPos(value, 'y', true));
+      if (y < bbox.top || y > bbox.top + bbox.height) continue;
+      const stop = level === 'stop';
+      ctx.strokeStyle = stop ? look.stop : look.caution;
+      ctx.fillStyle = look.ink;
+      ctx.lineWidth = (stop ? 2.5 : 1.5) * devicePixelRatio;
+      ctx.setLineDash(stop ? [] : [10 * devicePixelRatio, 6 * devicePixelRatio]);
+      ctx.beginPath();
+      ctx.moveTo(bbox.left, y);
+      ctx.lineTo(bbox.left + bbox.width, y);
+      ctx.stroke();
+      const below = y - bbox.top < 16 * devicePixelRatio;
+      ctx.textBaseline = below ? 'top' : 'bottom';
+      ctx.fillText(label, bbox.left + 6 * devicePixelRatio, y + (below ? 3 : -2));
+    }
+    ctx.restore();
+  }
+
+  /** Each line's letter at its right end, moved apart where lines lie together. */
+  #drawLetters(plot: uPlot, look: Look): void {
+    const { ctx, bbox } = plot;
+    const ends = (this.#picture?.lines ?? []).flatMap(({ letter, color, last }) => {
+      const value = last.findLast(isFigure);
+      return value === undefined ? [] : [{ letter, color, y: plot.valToPos(value, 'y', true) }];
+    });
+    ends.sort((a, b) => a.y - b.y);
+    const room = 15 * devicePixelRatio;
+    let above = bbox.top - room;
+    ctx.save();
+    ctx.font = `bold ${look.font}`;
+    ctx.textBaseline = 'middle';
+    for (const { letter, color, y } of ends) {
+      above = Math.max(y, above + room);
+      ctx.fillStyle = color;
+      ctx.fillText(letter, bbox.left + bbox.width + 6 * devicePixelRatio, above);
+    }
+    ctx.restore();
+  }
+}
+
+const lineAt = (picture: TrendPicture | null, series: number): readonly Cell[] =>
+  picture?.lines[(series - 1) / 3]?.last ?? [];
+
+/** As many decimals as tell one split from the next. */
+const axisText =
+  (splits: readonly number[]) =>
+  (value: number): string => {
+    const step = Math.abs((splits[1] ?? 1) - (splits[0] ?? 0)) || 1;
+    const decimals = Math.max(0, Math.ceil(-Math.log10(step) - 1e-9));
+    const text = Math.abs(value).toFixed(Math.min(decimals, 6));
+    return value < 0 && Number(text) !== 0 ? `\u2212${text}` : text;
+  };

@@ -1,0 +1,1 @@
+export { putLimits as sendLimits } from '../feed/api.ts';
