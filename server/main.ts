@@ -7,7 +7,10 @@ const complain = (line: string) => process.stderr.write(`${line}\n`);
 
 const main = async (): Promise<void> => {
   const args = process.argv.slice(2);
-  if (args.includes('--help')) return say(USAGE);
+  if (args.includes('--help')) {
+    say(USAGE);
+    return;
+  }
   const read = readConfig(args, process.cwd());
   if (!read.ok) {
     for (const { path, expected, came } of read.faults) {
