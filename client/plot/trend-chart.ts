@@ -32,11 +32,27 @@ export interface TrendPicture {
 
 export interface Look {
   readonly ink: string;
-  readonly soft: string;
+  readonly ground: string;
   readonly rule: string;
   readonly caution: string;
   readonly stop: string;
-  readonly font: string;
+  /** CSS px */
+  readonly fontSize: number;
+  readonly fontFamily: string;
+}
+
+/** On axes uPlot scales a font to the screen itself; what is drawn by hand does so here. */
+const fontOf = ({ fontSize, fontFamily }: Look, scale = 1): string =>
+  `${fontSize * scale}px ${fontFamily}`;
+
+/** Height of a limit's label, CSS px. */
+const LABEL = 16;
+
+/** Stop limits are named at the left end of their line, caution limits at the right. */
+interface Label {
+  readonly y: number;
+  readonly label: string;
+  readonly stop: boolean;
 }
 
 const isFigure = (cell: Cell): cell is number => cell !== null && cell !== undefined;
@@ -100,7 +116,7 @@ export class TrendChart {
   }
 
   #options({ lines }: TrendPicture, look: Look, width: number, height: number): uPlot.Options {
-    const axis = { stroke: look.ink, font: look.font, grid: { stroke: look.rule, width: 1 } };
+    const axis = { stroke: look.ink, font: fontOf(look), grid: { stroke: look.rule, width: 1 } };
     const none = { stroke: 'transparent', width: 0, points: { show: false } };
     return {
       ...{ width, height, padding: [10, 26, 0, 0] },
@@ -143,25 +159,45 @@ export class TrendChart {
   #drawLimits(plot: uPlot, look: Look): void {
     const { ctx, bbox } = plot;
     ctx.save();
-    ctx.font = look.font;
-    ctx.textBaseline = 'bottom';
+    ctx.font = fontOf(look, devicePixelRatio);
+    ctx.textAlign = 'left';
+    ctx.lineJoin = 'round';
+    const labels: Label[] = [];
     for (const { value, label, level } of this.#picture?.limits ?? []) {
       const y = Math.round(plot.valToPos(value, 'y', true));
       if (y < bbox.top || y > bbox.top + bbox.height) continue;
       const stop = level === 'stop';
       ctx.strokeStyle = stop ? look.stop : look.caution;
-      ctx.fillStyle = look.ink;
       ctx.lineWidth = (stop ? 2.5 : 1.5) * devicePixelRatio;
       ctx.setLineDash(stop ? [] : [10 * devicePixelRatio, 6 * devicePixelRatio]);
       ctx.beginPath();
       ctx.moveTo(bbox.left, y);
       ctx.lineTo(bbox.left + bbox.width, y);
       ctx.stroke();
-      const below = y - bbox.top < 16 * devicePixelRatio;
-      ctx.textBaseline = below ? 'top' : 'bottom';
-      ctx.fillText(label, bbox.left + 6 * devicePixelRatio, y + (below ? 3 : -2));
+      labels.push({ y, label, stop });
     }
+    ctx.setLineDash([]);
+    ctx.strokeStyle = look.ground;
+    ctx.fillStyle = look.ink;
+    ctx.lineWidth = 4 * devicePixelRatio;
+    labels.forEach((one, i) => {
+      // Of lines that lie on each other the first one's label stands for the rest of its level.
+      if (labels.slice(0, i).some((other) => this.#hides(other, one))) return;
+      const above = one.stop && one.y - bbox.top > LABEL * devicePixelRatio;
+      const y = one.y + (above ? -4 : 5) * devicePixelRatio;
+      const inset = 6 * devicePixelRatio;
+      const x = one.stop ? bbox.left + inset : bbox.left + bbox.width - inset;
+      ctx.textAlign = one.stop ? 'left' : 'right';
+      ctx.textBaseline = above ? 'bottom' : 'top';
+      ctx.strokeText(one.label, x, y);
+      ctx.fillText(one.label, x, y);
+    });
     ctx.restore();
+  }
+
+  #hides(first: Label, second: Label): boolean {
+    const apart = Math.abs(first.y - second.y) / devicePixelRatio;
+    return first.stop === second.stop && apart < LABEL;
   }
 
   /** Each line's letter at its right end, moved apart where lines lie together. */
@@ -175,7 +211,8 @@ export class TrendChart {
     const room = 15 * devicePixelRatio;
     let above = bbox.top - room;
     ctx.save();
-    ctx.font = `bold ${look.font}`;
+    ctx.font = `bold ${fontOf(look, devicePixelRatio)}`;
+    ctx.textAlign = 'left';
     ctx.textBaseline = 'middle';
     for (const { letter, color, y } of ends) {
       above = Math.max(y, above + room);

@@ -131,3 +131,9 @@ export const figureText = (value: number, scale: Scale): string => {
 
 export const quantityText = (value: number, scale: Scale): string =>
   `${figureText(value, scale)}${NO_BREAK}${scale.unit}`;
+
+/** A place along a member, m. */
+export const alongText = (metres: number, system: UnitSystem): string =>
+  system === 'si'
+    ? `${decimalText(metres, 2)}${NO_BREAK}m`
+    : `${decimalText(metreToInch(metre(metres)), 1)}${NO_BREAK}in`;

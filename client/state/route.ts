@@ -2,6 +2,12 @@
 export const PAGES = ['watch', 'alarms', 'set-up'] as const;
 export type Page = (typeof PAGES)[number];
 
+export const PAGE_NAMES: Readonly<Record<Page, string>> = {
+  watch: 'Watch',
+  alarms: 'Alarms',
+  'set-up': 'Set-up',
+};
+
 /** Lengths of the trend, s. */
 export const SPANS = [120, 600, 3600] as const;
 export type Span = (typeof SPANS)[number];

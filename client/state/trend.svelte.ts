@@ -56,6 +56,7 @@ export class TrendState {
   }
 
   async #fill(buffers: Buffers): Promise<void> {
+    if (buffers.size === 0) return;
     const to = this.#live.serverNow();
     let problem: string | null = null;
     for (const [index, buffer] of buffers) {

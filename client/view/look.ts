@@ -6,11 +6,12 @@ const styleOf = (name: string): string =>
 /** The sheet's colours as they are now, for what is drawn on a canvas. */
 export const lookOf = (): Look => ({
   ink: styleOf('--ink'),
-  soft: styleOf('--ink-soft'),
+  ground: styleOf('--sheet'),
   rule: styleOf('--rule'),
   caution: styleOf('--caution'),
   stop: styleOf('--stop'),
-  font: `13px ${getComputedStyle(document.body).fontFamily}`,
+  fontSize: 13,
+  fontFamily: getComputedStyle(document.body).fontFamily,
 });
 
 /** `#rrggbb` */
