@@ -29,7 +29,7 @@ export default tseslint.config(
     extends: [...tseslint.configs.recommendedTypeChecked],
     languageOptions: {
       parserOptions: {
-        projectService: { allowDefaultProject: ['client/*.config.ts'] },
+        projectService: true,
         extraFileExtensions: ['.svelte'],
         tsconfigRootDir: import.meta.dirname,
       },
@@ -84,7 +84,7 @@ export default tseslint.config(
   { files: ['**/*.{js,cjs,mjs}'], languageOptions: { globals: { ...NODE, module: 'writable' } } },
   {
     rules: {
-      'max-lines': ['error', { max: 300 }],
+      'max-lines': ['error', { max: 300, skipBlankLines: true, skipComments: true }],
       'no-empty': ['error', { allowEmptyCatch: false }],
       eqeqeq: 'error',
     },
@@ -114,7 +114,8 @@ export default tseslint.config(
     'shared/ imports shared/ only: no packages, no Node.',
   ),
   direction(
-    ['client/**/*.{ts,svelte}'],
+    // All but the build's own settings, which run under Node.
+    ['client/*.svelte', 'client/main.ts', 'client/*/**/*.{ts,svelte}'],
     { regex: '^node:|/server/|/test/' },
     'The web page meets the server in shared/ only.',
   ),

@@ -3,6 +3,7 @@ import type { Site } from '../../shared/model/site.ts';
 import { decodeFrame, FRAME_TAGS } from '../../shared/pipeline/1-decode/frame.ts';
 import { decodeSenml } from '../../shared/pipeline/1-decode/senml.ts';
 import { decodeStatus } from '../../shared/pipeline/1-decode/status.ts';
+import { SENML_TAGS } from '../../shared/pipeline/1-decode/tags.ts';
 import { parseTopic, type NodeTopic } from '../../shared/pipeline/1-decode/topics.ts';
 import type { Decode, Delivery, Message } from '../ports.ts';
 import { readCbor } from './cbor.ts';
@@ -13,7 +14,6 @@ export const LONGEST_MESSAGE = 1_048_576;
 /** Past so many bytes a message is not even read. */
 export const LONGEST_READ = 16 * LONGEST_MESSAGE;
 
-const NO_TAGS: ReadonlySet<number> = new Set();
 const EMPTY_NODE = '(no name)';
 
 const chain = <A, B>(first: Result<A>, then: (value: A) => Result<B>): Result<B> =>
@@ -41,7 +41,7 @@ export const createDecode = (site: Site): Decode => {
       case 'senml/cbor': {
         const form = leaf === 'senml/json' ? 'json' : 'cbor';
         const declared = (input: string) => units.get(node)?.get(input) ?? null;
-        const parsed = form === 'json' ? readJson(payload) : readCbor(payload, NO_TAGS);
+        const parsed = form === 'json' ? readJson(payload) : readCbor(payload, SENML_TAGS);
         const pack = chain(parsed, (value) =>
           decodeSenml(value, { form, node, arrived, declared }),
         );

@@ -31,7 +31,18 @@ const typeInWords = (type: unknown): string =>
     .join(' or ');
 
 /** What the schema wants at the place itself. */
-const expectedAt = ({ keyword, params, schema, parentSchema }: ErrorObject): string => {
+/** What ajv tells beside a fault, as its documentation lists it by keyword. */
+interface Params {
+  readonly type: string | readonly string[];
+  readonly allowedValues: readonly unknown[];
+  readonly limit: number;
+  readonly missingProperty: string;
+  readonly additionalProperty: string;
+}
+
+const expectedAt = (error: ErrorObject): string => {
+  const { keyword, schema, parentSchema } = error;
+  const params = error.params as Params;
   switch (keyword) {
     case 'type':
       return typeInWords(params.type);
@@ -65,7 +76,8 @@ const expectedAt = ({ keyword, params, schema, parentSchema }: ErrorObject): str
 
 /** One of ajv's errors as a fault: where, what the schema wants there, what came. */
 export const shapeFault = (error: ErrorObject): Fault => {
-  const { instancePath, keyword, params, parentSchema, data } = error;
+  const { instancePath, keyword, parentSchema, data } = error;
+  const params = error.params as Params;
   if (keyword === 'required') {
     const missing = fieldOf(fieldOf(parentSchema, 'properties'), params.missingProperty);
     return {

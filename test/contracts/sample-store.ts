@@ -32,12 +32,7 @@ const ramp = (seq: number, boot = 'boot-1', node = 'n1') =>
     inputs: [{ input: 'a', samples: Float32Array.from({ length: 10 }, (_, i) => seq * 10 + i) }],
   });
 
-interface Sample {
-  readonly t: number;
-  readonly x: number;
-}
-
-const samplesOf = (frames: readonly StoredFrame[], input: string, over: string | null): Sample[] =>
+const samplesOf = (frames: readonly StoredFrame[], input: string, over: string | null) =>
   frames.flatMap(({ frame }) => {
     const raw = frame.inputs.find((one) => one.input === input)?.samples;
     const by = over === null ? null : frame.inputs.find((one) => one.input === over)?.samples;

@@ -115,7 +115,10 @@ export class SqliteReader {
     }
     const width = bucketWidth(k);
     const [first, end] = [Math.ceil(from / width), Math.floor(to / width)];
-    if (first >= end) return yield* this.#pieces(source, key, from, to, step, k - 1);
+    if (first >= end) {
+      yield* this.#pieces(source, key, from, to, step, k - 1);
+      return;
+    }
     yield* this.#pieces(source, key, from, first * width, step, k - 1);
     const rows = this.#buckets.iterate(source.series, k, first, end);
     for (const row of rows as IterableIterator<Summary & { bucket: number }>) {

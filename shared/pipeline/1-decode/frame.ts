@@ -7,10 +7,10 @@ import {
   type Result,
 } from '../../model/frame.ts';
 import { epochSeconds, seconds } from '../../model/units.ts';
+import { EpochTime, FRAME_TAGS } from './tags.ts';
 import { NAME, NAME_IN_WORDS, show } from './topics.ts';
 
-/** Tags that a frame may use: epoch time, and RFC 8746 little-endian s16, s32, f32, f64. */
-export const FRAME_TAGS: ReadonlySet<number> = new Set([1, 77, 78, 85, 86]);
+export { FRAME_TAGS };
 
 export const FRAME_VERSION = 1;
 export const MOST_SAMPLES = 100_000;
@@ -22,12 +22,12 @@ const TYPES = 'a little-endian float32, float64, int16 or int32 array (RFC 8746)
 
 type Fields = Readonly<Record<string, unknown>>;
 
-export const isMap = (value: unknown): value is Fields =>
-  typeof value === 'object' &&
-  value !== null &&
-  !Array.isArray(value) &&
-  !ArrayBuffer.isView(value) &&
-  !(value instanceof Date);
+/** A map as JSON and CBOR readers make it: a plain object, of no class. */
+export const isMap = (value: unknown): value is Fields => {
+  if (typeof value !== 'object' || value === null) return false;
+  const prototype: unknown = Object.getPrototypeOf(value);
+  return prototype === Object.prototype || prototype === null;
+};
 
 const isRawArray = (value: unknown): value is RawArray =>
   value instanceof Float32Array ||
@@ -35,9 +35,12 @@ const isRawArray = (value: unknown): value is RawArray =>
   value instanceof Int16Array ||
   value instanceof Int32Array;
 
-/** CBOR's tag 1 comes out of some readers as a Date. */
+/** A CBOR integer of eight bytes is read as a bigint, however small it is. */
+export const plainNumber = (value: unknown): unknown =>
+  typeof value === 'bigint' ? Number(value) : value;
+
 const timeOf = (value: unknown): unknown =>
-  value instanceof Date ? value.getTime() / 1e3 : typeof value === 'bigint' ? Number(value) : value;
+  plainNumber(value instanceof EpochTime ? value.seconds : value);
 
 export const isClockTime = (value: unknown): value is number =>
   typeof value === 'number' && value >= EARLIEST && value < LATEST;
@@ -69,6 +72,13 @@ const inputsOf = (value: unknown): Result<InputBlock[]> => {
   return accept(inputs);
 };
 
+/** 0 for a single sample that states none; null where it is none, or leads past the year 2100. */
+const intervalOf = (dt: unknown, t0: number, length: number): number | null => {
+  if (length === 1 && (dt === undefined || dt === 0)) return 0;
+  if (typeof dt !== 'number' || !Number.isFinite(dt) || dt <= 0) return null;
+  return isClockTime(t0 + length * dt) ? dt : null;
+};
+
 /**
  * A frame as read from CBOR, checked against docs/wire.cddl. Keys that are not
  * known are passed over, so that nodes may say more than this version hears.
@@ -76,35 +86,37 @@ const inputsOf = (value: unknown): Result<InputBlock[]> => {
  */
 export const decodeFrame = (parsed: unknown, topicNode: string): Result<Frame> => {
   if (!isMap(parsed)) return refuse('type', '(frame)', 'a map', show(parsed));
-  const { v, node, boot, seq, t0: stated, dt, in: inputs } = parsed;
-  const t0 = timeOf(stated);
-  if (v !== FRAME_VERSION) return refuse('version', 'v', String(FRAME_VERSION), show(v));
+  const { v, node, boot, in: inputs } = parsed;
+  const [seq, dt, t0] = [plainNumber(parsed.seq), plainNumber(parsed.dt), timeOf(parsed.t0)];
+  if (plainNumber(v) !== FRAME_VERSION) {
+    return refuse('version', 'v', String(FRAME_VERSION), show(v));
+  }
   if (node !== topicNode)
     return refuse('node', 'node', `${topicNode}, as in its topic`, show(node));
   if (typeof boot !== 'string' || !NAME.test(boot)) {
     return refuse('name', 'boot', NAME_IN_WORDS, show(boot));
   }
   if (typeof seq !== 'number' || !Number.isSafeInteger(seq) || seq < 0) {
-    return refuse('type', 'seq', 'a whole number from 0 to 2^53 − 1', show(seq));
+    return refuse('type', 'seq', 'a whole number from 0 to 2^53 − 1', show(parsed.seq));
   }
   if (!isClockTime(t0)) return refuse('time', 't0', CLOCK_TIME, show(t0));
   const blocks = inputsOf(inputs);
   if (!blocks.ok) return blocks;
-  const single = blocks.value[0]?.samples.length === 1;
-  const interval = dt === undefined && single ? 0 : dt;
-  const positive = typeof interval === 'number' && Number.isFinite(interval) && interval > 0;
-  if (!positive && !(single && interval === 0)) {
-    return refuse('time', 'dt', 'a sample interval above 0 s', show(dt));
+  const interval = intervalOf(dt, t0, blocks.value[0]?.samples.length ?? 0);
+  if (interval === null) {
+    const expected = 'a sample interval above 0 s, and the frame over before the year 2100';
+    return refuse('time', 'dt', expected, show(dt));
   }
   return accept({
     ...{ node: topicNode, boot, seq, sequenced: true, inputs: blocks.value },
-    ...{ t0: epochSeconds(t0), dt: seconds(Number(interval)) },
+    ...{ t0: epochSeconds(t0), dt: seconds(interval) },
   });
 };
 
 /** The map that a CBOR writer turns into a frame's bytes; the inverse of `decodeFrame`. */
 export const encodeFrame = ({ node, boot, seq, t0, dt, inputs }: Frame): Fields => ({
   v: FRAME_VERSION,
-  ...{ node, boot, seq, t0, dt },
+  ...{ node, boot, seq, t0 },
+  ...(dt > 0 ? { dt } : {}),
   in: Object.fromEntries(inputs.map(({ input, samples }) => [input, samples])),
 });

@@ -1,7 +1,7 @@
 import { accept, refuse, type Frame, type Refusal, type Result } from '../../model/frame.ts';
 import type { InputUnit } from '../../model/site.ts';
 import { epochSeconds, seconds, type EpochSeconds } from '../../model/units.ts';
-import { CLOCK_TIME, isClockTime, isMap } from './frame.ts';
+import { CLOCK_TIME, isClockTime, isMap, plainNumber } from './frame.ts';
 import { labelOf, SENML_LABELS, type SenmlForm, type SenmlLabel } from './senml-labels.ts';
 import { NAME, NAME_IN_WORDS, show } from './topics.ts';
 
@@ -30,6 +30,8 @@ const VALUES = ['v', 'vs', 'vb', 'vd'] as const;
 type Fields = Partial<Record<SenmlLabel, unknown>>;
 
 interface Bases {
+  /** Of the records before; null ahead of the first. */
+  bver: number | null;
   bn: string;
   bt: number;
   bu: string | undefined;
@@ -52,7 +54,7 @@ const fieldsOf = (record: unknown, at: string, form: SenmlForm): Checked<Fields>
   const fields: Fields = {};
   for (const [key, value] of Object.entries(record)) {
     const label = labelOf(key, form);
-    if (label) fields[label] = value;
+    if (label) fields[label] = plainNumber(value);
     else if (key.endsWith('_')) {
       return fault(
         'label',
@@ -69,10 +71,15 @@ const fieldsOf = (record: unknown, at: string, form: SenmlForm): Checked<Fields>
 
 /** Base fields hold until the next record that has them. */
 const applyBases = (fields: Fields, at: string, bases: Bases): Refusal | null => {
-  const { bver, bn, bt, bu, bv } = fields;
-  if (bver !== undefined && (typeof bver !== 'number' || !(bver <= VERSION))) {
-    return fault('version', `${at}.bver`, `at most ${VERSION}`, show(bver)).refusal;
+  const { bver = bases.bver ?? VERSION, bn, bt, bu, bv } = fields;
+  if (typeof bver !== 'number' || !Number.isInteger(bver) || bver < 1 || bver > VERSION) {
+    return fault('version', `${at}.bver`, `1 to ${VERSION}`, show(bver)).refusal;
   }
+  if (bases.bver !== null && bver !== bases.bver) {
+    const expected = `${bases.bver}, as in the records before`;
+    return fault('version', `${at}.bver`, expected, show(bver)).refusal;
+  }
+  bases.bver = bver;
   if (bn !== undefined && typeof bn !== 'string') {
     return fault('type', `${at}.bn`, 'text', show(bn)).refusal;
   }
@@ -116,7 +123,9 @@ const numberOf = (fields: Fields, at: string, bases: Bases): Checked<number> => 
   if (typeof fields.v !== 'number' || !Number.isFinite(fields.v)) {
     return fault('type', `${at}.v`, 'a number', show(fields.v));
   }
-  return { value: bases.bv + fields.v };
+  const value = bases.bv + fields.v;
+  if (Number.isFinite(value)) return { value };
+  return fault('type', `${at}.v`, 'a sum with bv that a double can hold', show(value));
 };
 
 const timeOf = (fields: Fields, at: string, bases: Bases, arrived: number): Checked<number> => {
@@ -137,6 +146,9 @@ const readingOf = (
   const name = nameOf(fields, at, bases, context.node);
   if ('refusal' in name) return name;
   const unit = fields.u ?? bases.bu;
+  if (unit !== undefined && typeof unit !== 'string') {
+    return fault('type', `${at}.u`, 'text', show(unit));
+  }
   const declared = context.declared(name.value);
   if (unit !== undefined && declared !== null && unit !== declared) {
     return fault('unit', `${at}.u`, `${declared}, as declared for ${name.value}`, show(unit));
@@ -168,10 +180,10 @@ const hasOwnFields = (fields: Fields): boolean =>
  */
 export const decodeSenml = (parsed: unknown, context: SenmlContext): Result<SenmlReadings> => {
   if (!Array.isArray(parsed)) return refuse('type', '(pack)', 'an array of records', show(parsed));
-  if (parsed.length > MOST_RECORDS) {
-    return refuse('size', '(pack)', `at most ${MOST_RECORDS} records`, String(parsed.length));
+  if (parsed.length === 0 || parsed.length > MOST_RECORDS) {
+    return refuse('size', '(pack)', `1 to ${MOST_RECORDS} records`, String(parsed.length));
   }
-  const bases: Bases = { bn: '', bt: 0, bu: undefined, bv: 0 };
+  const bases: Bases = { bver: null, bn: '', bt: 0, bu: undefined, bv: 0 };
   const frames: Frame[] = [];
   const refusals: Refusal[] = [];
   for (const [i, record] of parsed.entries()) {
@@ -199,9 +211,12 @@ export interface SenmlReading {
 /** The records that a JSON or CBOR writer turns into a pack; resolved, without base fields. */
 export const encodeSenml = (readings: readonly SenmlReading[], form: SenmlForm): unknown[] =>
   readings.map(({ name, unit, time, value }) => {
-    const fields = { n: name, u: unit, t: time, v: value };
-    if (form === 'json') return fields;
-    return new Map(
-      Object.entries(fields).map(([label, field]) => [SENML_LABELS[label as SenmlLabel], field]),
-    );
+    if (form === 'json') return { n: name, u: unit, t: time, v: value };
+    const { n, u, t, v } = SENML_LABELS;
+    return new Map<number, string | number>([
+      [n, name],
+      [u, unit],
+      [t, time],
+      [v, value],
+    ]);
   });

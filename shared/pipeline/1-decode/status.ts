@@ -11,15 +11,18 @@ export interface NodeStatus {
 
 const LONGEST = 200;
 
-const wordOf = (value: unknown): string | null =>
-  typeof value === 'string' ? value.slice(0, LONGEST) : null;
+const isWord = (value: unknown): value is string | null =>
+  value === null || (typeof value === 'string' && value.length <= LONGEST);
 
 export const decodeStatus = (parsed: unknown): Result<NodeStatus> => {
   if (!isMap(parsed)) return refuse('type', '(status)', 'a map', show(parsed));
-  const { v, online, boot, software } = parsed;
+  const { v, online, boot = null, software = null } = parsed;
   if (v !== 1) return refuse('version', 'v', '1', show(v));
   if (typeof online !== 'boolean') return refuse('type', 'online', 'true or false', show(online));
-  return accept({ online, boot: wordOf(boot), software: wordOf(software) });
+  const expected = `at most ${LONGEST} characters of text`;
+  if (!isWord(boot)) return refuse('type', 'boot', expected, show(boot));
+  if (!isWord(software)) return refuse('type', 'software', expected, show(software));
+  return accept({ online, boot, software });
 };
 
 export const encodeStatus = (status: NodeStatus): object => ({ v: 1, ...status });

@@ -31,17 +31,27 @@ export const parseTopic = (topic: string): Result<NodeTopic | null> => {
 
 const SHOWN = 80;
 
+const inWords = (value: unknown): string => {
+  switch (typeof value) {
+    case 'string':
+      return JSON.stringify(value.slice(0, SHOWN));
+    case 'number':
+    case 'bigint':
+    case 'boolean':
+      return String(value);
+    case 'undefined':
+      return 'nothing';
+    case 'object':
+      if (value === null) return 'null';
+      if (ArrayBuffer.isView(value)) return value.constructor.name;
+      return Array.isArray(value) ? `an array of ${value.length}` : 'a map';
+    default:
+      return typeof value;
+  }
+};
+
 /** What came, short enough to keep and to show. */
 export const show = (value: unknown): string => {
-  if (value === undefined) return 'nothing';
-  if (ArrayBuffer.isView(value)) return `${value.constructor.name}`;
-  const text =
-    typeof value === 'string'
-      ? JSON.stringify(value.slice(0, SHOWN))
-      : typeof value === 'object' && value !== null
-        ? Array.isArray(value)
-          ? `an array of ${value.length}`
-          : 'a map'
-        : String(value);
+  const text = inWords(value);
   return text.length > SHOWN ? `${text.slice(0, SHOWN - 1)}…` : text;
 };

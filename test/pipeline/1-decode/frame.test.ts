@@ -1,6 +1,9 @@
+import { readFileSync } from 'node:fs';
 import { describe, expect, test } from 'vitest';
-import { decodeFrame } from '../../../shared/pipeline/1-decode/frame.ts';
+import { readCbor } from '../../../server/ingest/cbor.ts';
+import { decodeFrame, encodeFrame } from '../../../shared/pipeline/1-decode/frame.ts';
 import { decodeStatus, encodeStatus } from '../../../shared/pipeline/1-decode/status.ts';
+import { EpochTime, FRAME_TAGS } from '../../../shared/pipeline/1-decode/tags.ts';
 import { parseTopic, topicOf } from '../../../shared/pipeline/1-decode/topics.ts';
 
 const good = {
@@ -21,13 +24,42 @@ test('a frame as docs/wire.cddl describes it', () => {
   });
 });
 
-test('one sample needs no interval; keys not known are passed over; tag 1 may come as a date', () => {
+test('the frame of docs/wire.md, byte by byte', () => {
+  const prose = readFileSync(new URL('../../../docs/wire.md', import.meta.url), 'utf8');
+  const listing = /```cbor\n([^]*?)```/.exec(prose)?.[1] ?? '';
+  const bytes = Buffer.from(listing.replace(/#.*$/gm, '').replace(/\s/g, ''), 'hex');
+  expect(prose).toContain(`${bytes.length} bytes:`);
+  const read = readCbor(bytes, FRAME_TAGS);
+  expect(read.ok && decodeFrame(read.value, 'n1')).toEqual({
+    ok: true,
+    value: {
+      ...{ node: 'n1', boot: 'b7', seq: 3, sequenced: true, t0: 1_700_000_000.25, dt: 0.5 },
+      inputs: [
+        { input: 's1', samples: Float32Array.of(1, -2.5) },
+        { input: 's2', samples: Int16Array.of(1, -2) },
+      ],
+    },
+  });
+});
+
+test('one sample needs no interval, and none is written for it; unknown keys are passed over', () => {
   const { dt: _, ...rest } = good;
   const single = { ...rest, in: { s1: Float64Array.of(1) }, battery: 3.7 };
-  expect(decodeFrame({ ...single, t0: new Date(1.7e12) }, 'n1')).toMatchObject({
+  const decoded = decodeFrame(single, 'n1');
+  expect(decoded).toMatchObject({ ok: true, value: { dt: 0 } });
+  expect(decoded.ok && Object.keys(encodeFrame(decoded.value))).not.toContain('dt');
+  expect(decodeFrame({ ...single, dt: 0 }, 'n1')).toEqual(decoded);
+});
+
+test('tag 1 for a time, and integers of eight bytes, are numbers like any other', () => {
+  const wide = { ...good, v: 1n, seq: 3n, t0: new EpochTime(1_700_000_000n), dt: 2n };
+  expect(decodeFrame(wide, 'n1')).toMatchObject({
     ok: true,
-    value: { dt: 0, t0: 1.7e9 },
+    value: { seq: 3, t0: 1_700_000_000, dt: 2 },
   });
+  const exact = { ...good, t0: new EpochTime(1_700_000_000.000_25) };
+  expect(decodeFrame(exact, 'n1')).toMatchObject({ value: { t0: 1_700_000_000.000_25 } });
+  expect(decodeFrame({ ...good, seq: new EpochTime(3) }, 'n1')).toMatchObject({ ok: false });
 });
 
 describe('every refusal names the field, what was expected and what came', () => {
@@ -44,6 +76,18 @@ describe('every refusal names the field, what was expected and what came', () =>
     ['no number for a time', { t0: NaN }, 't0', 'NaN'],
     ['no interval for two samples', { dt: undefined }, 'dt', 'nothing'],
     ['an interval of 0', { dt: 0 }, 'dt', '0'],
+    ['time that runs back', { dt: -0.01 }, 'dt', '-0.01'],
+    ['an interval without end', { dt: Infinity }, 'dt', 'Infinity'],
+    ['a frame that ends after 2100', { dt: 2e9 }, 'dt', '2000000000'],
+    [
+      'a name of 65 characters',
+      { in: { ['x'.repeat(65)]: Float32Array.of(1) } },
+      'in',
+      `"${'x'.repeat(65)}"`,
+    ],
+    ['a name with a slash', { in: { 'a/b': Float32Array.of(1) } }, 'in', '"a/b"'],
+    ['a tagged time for the inputs', { in: new EpochTime(5) }, 'in', 'a map'],
+    ['100,001 samples', { in: { s1: new Int16Array(100_001) } }, 'in.s1', '100001'],
     ['no inputs', { in: {} }, 'in', '0'],
     ['an array for the inputs', { in: [1] }, 'in', 'an array of 1'],
     ['plain numbers', { in: { s1: [1, 2] } }, 'in.s1', 'an array of 2'],
@@ -64,7 +108,16 @@ describe('every refusal names the field, what was expected and what came', () =>
 
   test('what came is cut short', () => {
     const decoded = decodeFrame({ ...good, boot: 'x'.repeat(10_000) }, 'n1');
-    expect(decoded.ok ? Infinity : decoded.refusal.came.length).toBeLessThanOrEqual(82);
+    expect(decoded.ok ? Infinity : decoded.refusal.came.length).toBeLessThanOrEqual(80);
+  });
+
+  test('512 inputs are taken, 513 are not', () => {
+    const inputs = (count: number) =>
+      Object.fromEntries(Array.from({ length: count }, (_, i) => [`s${i}`, Int16Array.of(1, 2)]));
+    expect(decodeFrame({ ...good, in: inputs(512) }, 'n1')).toMatchObject({ ok: true });
+    expect(decodeFrame({ ...good, in: inputs(513) }, 'n1')).toMatchObject({
+      refusal: { field: 'in', came: '513' },
+    });
   });
 });
 
@@ -80,6 +133,19 @@ describe('topics', () => {
 });
 
 test('status, there and back; a will that says nothing of use is refused', () => {
+  expect(decodeStatus({ v: 1, online: false })).toEqual({
+    ok: true,
+    value: { online: false, boot: null, software: null },
+  });
+  expect(decodeStatus({ v: 2, online: true })).toMatchObject({
+    refusal: { field: 'v', came: '2' },
+  });
+  expect(decodeStatus({ v: 1, online: true, boot: 7 })).toMatchObject({
+    refusal: { field: 'boot' },
+  });
+  expect(decodeStatus({ v: 1, online: true, software: 'x'.repeat(201) })).toMatchObject({
+    refusal: { field: 'software', expected: 'at most 200 characters of text' },
+  });
   const status = { online: true, boot: 'b7', software: 'demo 1' };
   expect(decodeStatus(encodeStatus(status))).toEqual({ ok: true, value: status });
   expect(decodeStatus({ v: 1, online: 'yes' })).toMatchObject({

@@ -4,49 +4,11 @@ import { readCbor, writeCbor } from '../../../server/ingest/cbor.ts';
 import { readJson } from '../../../server/ingest/json.ts';
 import type { InputUnit } from '../../../shared/model/site.ts';
 import { epochSeconds } from '../../../shared/model/units.ts';
-import {
-  decodeSenml,
-  encodeSenml,
-  type SenmlContext,
-} from '../../../shared/pipeline/1-decode/senml.ts';
-
-const ARRIVED = epochSeconds(1_800_000_000);
-const context = (change: Partial<SenmlContext> = {}): SenmlContext => ({
-  form: 'json',
-  node: 'yard',
-  arrived: ARRIVED,
-  declared: () => null,
-  ...change,
-});
-
-const readings = (pack: unknown, change: Partial<SenmlContext> = {}) => {
-  const decoded = decodeSenml(pack, context(change));
-  if (!decoded.ok) return decoded.refusal;
-  return {
-    values: decoded.value.frames.map((f) => [f.inputs[0]?.input, f.t0, f.inputs[0]?.samples[0]]),
-    refusals: decoded.value.refusals,
-  };
-};
+import { decodeSenml, encodeSenml } from '../../../shared/pipeline/1-decode/senml.ts';
+import { SENML_TAGS } from '../../../shared/pipeline/1-decode/tags.ts';
+import { ARRIVED, context, readings } from './readings.ts';
 
 describe('RFC 8428 §5: resolved records', () => {
-  test('§5.1.2-like pack: base time, base unit, times before it (values from memory of the RFC)', () => {
-    const pack = [
-      { bn: 'yard/', bt: 1.276020076e9, bu: 'A', n: 'voltage', u: 'V', v: 120.1 },
-      { n: 'current', t: -5, v: 1.2 },
-      { n: 'current', t: -4, v: 1.3 },
-      { n: 'current', v: 1.7 },
-    ];
-    expect(readings(pack)).toEqual({
-      values: [
-        ['current', 1276020071, 1.2],
-        ['current', 1276020072, 1.3],
-        ['voltage', 1276020076, 120.1],
-        ['current', 1276020076, 1.7],
-      ],
-      refusals: [],
-    });
-  });
-
   test('base value is added to each value, base name stands before each name', () => {
     expect(
       readings([
@@ -69,7 +31,7 @@ describe('RFC 8428 §5: resolved records', () => {
     expect(at(2 ** 28)).toMatchObject({ values: [], refusals: [{ field: '[0].t' }] });
   });
 
-  test('§10-like CBOR bytes: the same records by integer labels', () => {
+  test('§6: integer labels, bytes worked out by hand', () => {
     // {bn:"b1/g1/", bt:1700000000, bu:"/", n:"e", v:0.0005}, {n:"e", t:1, v:-0.00025}
     const bytes = Buffer.from(
       '82a52166' +
@@ -84,7 +46,7 @@ describe('RFC 8428 §5: resolved records', () => {
       'hex',
     );
     expect(bytes).toHaveLength(48);
-    const read = readCbor(bytes, new Set());
+    const read = readCbor(bytes, SENML_TAGS);
     const parsed = read.ok ? read.value : null;
     // Named for another node, it is refused reading by reading; for its own, resolved.
     expect(readings(parsed, { form: 'cbor' })).toMatchObject({
@@ -106,7 +68,27 @@ describe('what refuses a pack, and what a reading', () => {
   test.each<[string, unknown, string]>([
     ['no array', { n: 'x', v: 1 }, '(pack)'],
     ['a record that is none', [7], '[0]'],
+    ['no record', [], '(pack)'],
+    ['10,001 records', Array.from({ length: 10_001 }, () => ({ n: 'x', v: 1 })), '(pack)'],
     ['a higher version', [{ bver: 11, n: 'x', v: 1 }], '[0].bver'],
+    ['half a version', [{ bver: 5.5, n: 'x', v: 1 }], '[0].bver'],
+    [
+      'two versions',
+      [
+        { bver: 5, n: 'x', v: 1 },
+        { bver: 6, n: 'x', v: 2 },
+      ],
+      '[1].bver',
+    ],
+    [
+      'a version after its default',
+      [
+        { n: 'x', v: 1 },
+        { bver: 5, n: 'x', v: 2 },
+      ],
+      '[1].bver',
+    ],
+    ['a base name of figures', [{ bn: 5, n: 'x', v: 1 }], '[0].bn'],
     ['a label that must be understood', [{ n: 'x', v: 1, secret_: 1 }], '[0].secret_'],
     ['a base time of text', [{ bt: 'now', n: 'x', v: 1 }], '[0].bt'],
   ])('pack: %s', (_, pack, field) => {
@@ -152,6 +134,48 @@ describe('what refuses a pack, and what a reading', () => {
   });
 });
 
+test('a sum beyond all doubles, a unit of figures, a time of text, a name of none: refused alone', () => {
+  const pack = [
+    { bv: 1e308, n: 'x', v: 1e308 },
+    { bv: 0, n: 'x', u: 5, v: 1 },
+    { n: 'x', t: 'now', v: 1 },
+    { v: 1 },
+    { n: 'good', v: 1 },
+  ];
+  expect(readings(pack)).toMatchObject({
+    values: [['good', ARRIVED, 1]],
+    refusals: [
+      { field: '[0].v', came: 'Infinity' },
+      { field: '[1].u', came: '5' },
+      { field: '[2].t', came: '"now"' },
+      { field: '[3].n', came: '""' },
+    ],
+  });
+});
+
+test('CBOR: decimal fractions (RFC 8428 §6), wide integers; no integer label but those of Table 4', () => {
+  // [{0: "x", 2: 4([-2, 27315]), 6: 1700000000 in eight bytes}], bytes worked out by hand.
+  const read = readCbor(
+    Buffer.from('81a3006178 02c48221196ab3 061b000000006553f100'.replace(/ /g, ''), 'hex'),
+    SENML_TAGS,
+  );
+  expect(readings(read.ok ? read.value : null, { form: 'cbor' })).toEqual({
+    values: [['x', 1_700_000_000, 273.15]],
+    refusals: [],
+  });
+  expect(readings([{ 0: 'x', 2: 1, 9: 'link' }], { form: 'cbor' })).toMatchObject({
+    field: '[0].9',
+    expected: 'an integer label of RFC 8428',
+  });
+});
+
+test('written in CBOR: integer labels in a map of stated length, bytes worked out by hand', () => {
+  const one = { name: 'e', unit: '/', time: epochSeconds(1_700_000_000), value: 0.0005 } as const;
+  expect(Buffer.from(writeCbor(encodeSenml([one], 'cbor'))).toString('hex')).toBe(
+    '81a4' + '006165' + '01612f' + '061a6553f100' + '02fb3f40624dd2f1a9fc',
+  );
+});
+
 test('the same reading is the same frame whenever it comes; two inputs of one moment are two', () => {
   const decode = (pack: unknown) => decodeSenml(pack, context());
   const pack = [
@@ -174,7 +198,7 @@ test('written and read in both forms, the figures are the same doubles (RFC 8428
   fc.assert(
     fc.property(reading, (one) => {
       const json = readJson(Buffer.from(JSON.stringify(encodeSenml([one], 'json'))));
-      const cbor = readCbor(writeCbor(encodeSenml([one], 'cbor')), new Set());
+      const cbor = readCbor(writeCbor(encodeSenml([one], 'cbor')), SENML_TAGS);
       const expected = { values: [[one.name, one.time, one.value]], refusals: [] };
       expect(readings(json.ok ? json.value : null)).toEqual(expected);
       expect(readings(cbor.ok ? cbor.value : null, { form: 'cbor' })).toEqual(expected);
