@@ -113,9 +113,8 @@ export class TrendBuffer {
       if (state === BROKEN) put(i, null, null, null);
       if (state !== GOOD) continue;
       put(i, this.#last[place], this.#min[place], this.#max[place]);
-      if (before >= 0 && i - before > 1 && (i - before) * this.step > patience) {
-        put(before + 1, null, null, null);
-      }
+      const silent = before >= 0 && (i - before) * this.step > patience;
+      for (let j = before + 1; silent && j < i; j++) put(j, null, null, null);
       before = i;
     }
     return columns;

@@ -38,7 +38,11 @@ describe('the address', () => {
       structure: fc.option(name),
       open: fc.option(name),
     });
-    fc.assert(fc.property(place, (route) => expect(parseRoute(routeText(route))).toEqual(route)));
+    fc.assert(
+      fc.property(place, (route) => {
+        expect(parseRoute(routeText(route))).toEqual(route);
+      }),
+    );
   });
 
   test('with too many channels keeps as many as the trend holds', () => {

@@ -47,12 +47,12 @@ describe('a trend', () => {
   test('has a gap where nothing came for longer than is waited, and none where less', () => {
     const buffer = new TrendBuffer(1, 10);
     buffer.add(START, 1, 1, 1);
-    buffer.add(START + 2, 2, 2, 2);
-    const short = buffer.columns(START + 2, 2.5);
-    expect(newest(short.last, 3)).toEqual([1, undefined, 2]);
-    const long = buffer.columns(START + 2, 1.5);
-    expect(newest(long.last, 3)).toEqual([1, null, 2]);
-    expect(newest(long.min, 3)).toEqual([1, null, 2]);
+    buffer.add(START + 3, 2, 2, 2);
+    const short = buffer.columns(START + 3, 3.5);
+    expect(newest(short.last, 4)).toEqual([1, undefined, undefined, 2]);
+    const long = buffer.columns(START + 3, 1.5);
+    expect(newest(long.last, 4)).toEqual([1, null, null, 2]);
+    expect(newest(long.min, 4)).toEqual([1, null, null, 2]);
   });
 
   test('has a gap where figures came that are not believed, unless some beside them are', () => {
