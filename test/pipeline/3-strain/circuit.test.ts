@@ -43,8 +43,8 @@ const response = fc
 const microstrain = within(-20_000, 20_000);
 const RUNS = { numRuns: 2000 };
 /** The solve's own rounding, with conductors of 10 mΩ in series with arms of 1 kΩ. */
-const SOLVE_ROUNDING = 1e-11;
-const SOLVE_ROUNDING_MICROSTRAIN = 1e-4;
+const SOLVE_ROUNDING = 1e-10;
+const SOLVE_ROUNDING_MICROSTRAIN = 1e-3;
 
 /** The same bridge with its unloaded output, as the network has it, for a zero. */
 const zeroed = (of: BridgeResponse, off?: Parameters<typeof networkOutput>[2]): BridgeResponse => ({
