@@ -12,7 +12,11 @@ export interface Stretch {
   quality: Quality;
 }
 
-const [NO_LOW, NO_HIGH] = [-Infinity, Infinity];
+/** The ends of a range as the samples' own type holds them: a float32 at the rail is at the rail. */
+const ends = (range: Range, raw: RawArray): readonly [low: number, high: number] => {
+  const [low, high] = range ?? [-Infinity, Infinity];
+  return raw instanceof Float32Array ? [Math.fround(low), Math.fround(high)] : [low, high];
+};
 
 /**
  * Converts samples [from, to) of `raw` into `out` by one fractional-linear map,
@@ -28,8 +32,7 @@ export const convert = (
   out: Float64Array,
 ): Stretch => {
   const { a, b, c, d } = map;
-  const low = range?.[0] ?? NO_LOW;
-  const high = range?.[1] ?? NO_HIGH;
+  const [low, high] = ends(range, raw);
   let min = Infinity;
   let max = -Infinity;
   for (let i = from; i < to; i++) {
@@ -60,10 +63,8 @@ export const convertOver = (
   out: Float64Array,
 ): Stretch => {
   const ratios = new Float64Array(to);
-  const low = excitationRange?.[0] ?? NO_LOW;
-  const high = excitationRange?.[1] ?? NO_HIGH;
-  const rawLow = range?.[0] ?? NO_LOW;
-  const rawHigh = range?.[1] ?? NO_HIGH;
+  const [low, high] = ends(excitationRange, excitation);
+  const [rawLow, rawHigh] = ends(range, raw);
   for (let i = from; i < to; i++) {
     const x = raw[i] ?? NaN;
     const over = excitation[i] ?? NaN;
