@@ -5,7 +5,8 @@ import { encodeFrame, FRAME_TAGS } from '../../shared/pipeline/1-decode/frame.ts
 import { topicOf } from '../../shared/pipeline/1-decode/topics.ts';
 import { epochSeconds, seconds } from '../../shared/model/units.ts';
 import { unpackLive } from '../../shared/protocol/socket.ts';
-import { quantile } from './figures.ts';
+import { median, quantile, type Row } from './figures.ts';
+import { end, message, startPart, startServer } from './processes.ts';
 import type { BenchSite } from './site.ts';
 
 export interface Target {
@@ -45,15 +46,26 @@ const watch = (socket: Socket, target: Target, sent: Map<number, number>, delays
   });
 };
 
+interface Delays {
+  readonly p50: number;
+  readonly p99: number;
+  readonly frames: number;
+  readonly seen: number;
+}
+
 /** Delays from a frame's publication to its values in a browser's socket, ms. */
-export const measureLatency = async (target: Target, site: BenchSite, duration: number) => {
+const measureLatency = async (
+  target: Target,
+  site: BenchSite,
+  duration: number,
+): Promise<Delays> => {
   const socket = io(target.http, { transports: ['websocket'] });
   await new Promise((resolve) => socket.once('connect', () => resolve(undefined)));
   const client = await connectAsync(target.broker, { protocolVersion: 4 });
   const sent = new Map<number, number>();
   const delays: number[] = [];
   watch(socket, target, sent, delays);
-  const boot = `latency-${process.pid}-${target.carries}`;
+  const boot = `latency-${Date.now()}-${target.carries}`;
   const run = async (
     node: string,
     inputs: readonly string[],
@@ -106,4 +118,47 @@ export const measureLatency = async (target: Target, site: BenchSite, duration: 
     frames,
     seen: delays.length,
   };
+};
+
+const ROUNDS = 3;
+const LASTING = 8;
+const GOAL = 2;
+
+/** 64 channels × 100 samples/s: published to in a browser's socket, against a bare relay, in turns. */
+export const benchLatency = async (site: BenchSite, data: string): Promise<Row[]> => {
+  const relay = startPart('relay.ts');
+  const bare = await message<{ broker: string; http: string }>(relay);
+  const server = await startServer(site.file, data);
+  const figures: { bare: Delays; whole: Delays }[] = [];
+  try {
+    for (let round = 0; round < ROUNDS; round++) {
+      figures.push({
+        bare: await measureLatency({ ...bare, carries: 'frame' }, site, LASTING),
+        whole: await measureLatency(
+          { broker: server.mqtt, http: server.http, carries: 'live' },
+          site,
+          LASTING,
+        ),
+      });
+    }
+  } finally {
+    await end(relay);
+    await end(server.process);
+  }
+  const of = (way: 'bare' | 'whole', at: 'p50' | 'p99') => median(figures.map((f) => f[way][at]));
+  const lost = figures.reduce((sum, { whole }) => sum + whole.frames - whole.seen, 0);
+  const ratio = median(figures.map(({ bare: b, whole }) => whole.p99 / b.p99));
+  return [
+    { what: 'bare relay p50', figure: of('bare', 'p50'), unit: 'ms' },
+    { what: 'bare relay p99', figure: of('bare', 'p99'), unit: 'ms' },
+    { what: 'published to socket p50', figure: of('whole', 'p50'), unit: 'ms' },
+    { what: 'published to socket p99', figure: of('whole', 'p99'), unit: 'ms' },
+    { what: 'frames not seen in the socket', figure: lost, unit: '' },
+    {
+      what: 'p99 over the bare relay',
+      figure: ratio,
+      unit: '',
+      goal: { text: `at most ${GOAL}`, met: ratio <= GOAL },
+    },
+  ];
 };
