@@ -50,9 +50,9 @@ export const benchLookBack = async (site: BenchSite, data: string): Promise<Row[
   await fill(data, node.id, input);
   const server = await startServer(site.file, data);
   const ask = async (from: number, span: number) => {
-    const query = `from=${from}&to=${from + span}&points=${POINTS}`;
+    const query = `channel=${node.id}-${input}&from=${from}&to=${from + span}&points=${POINTS}`;
     const start = performance.now();
-    const answer = await fetch(`${server.http}/api/channels/${node.id}-${input}/history?${query}`);
+    const answer = await fetch(`${server.http}/api/history?${query}`);
     const { t } = (await answer.json()) as { t?: readonly number[] };
     const took = performance.now() - start;
     if (!t || t.length < POINTS / 4) {
