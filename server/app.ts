@@ -1,8 +1,6 @@
 /** The composition root: the only file that knows every adapter. */
-import { createServer } from 'node:http';
-import type { AddressInfo } from 'node:net';
 import type { Limit } from '../shared/model/limit.ts';
-import { planSite, type ChannelPlan } from '../shared/pipeline/index.ts';
+import { planSite } from '../shared/pipeline/index.ts';
 import { channelsOf, type Site } from '../shared/model/site.ts';
 import type { Health } from '../shared/protocol/http.ts';
 import { systemClock } from './clock.ts';
@@ -11,6 +9,7 @@ import { AlarmKeeper } from './core/alarms.ts';
 import { createBroadcast } from './core/broadcast.ts';
 import { Committer } from './core/committer.ts';
 import { createCore } from './core/core.ts';
+import { excitationPairs } from './core/excitation-pairs.ts';
 import { PresentValues } from './core/present.ts';
 import { runSteps, type Step } from './core/steps.ts';
 import { Tally } from './core/tally.ts';
@@ -18,16 +17,16 @@ import { startFleet, type Fleet } from './demo/fleet.ts';
 import { createFlow } from './flow.ts';
 import { createHttp } from './http/http.ts';
 import { createMetrics } from './http/metrics.ts';
+import { createWebServer } from './http/web-server.ts';
 import { createDecode } from './ingest/decode.ts';
 import { embeddedBroker } from './ingest/embedded-broker.ts';
 import { externalBroker } from './ingest/external-broker.ts';
 import { packageFile } from './package-root.ts';
-import type { FrameSource } from './ports.ts';
+import type { ExcitationPairs, FrameSource, RecordStore, SampleStore } from './ports.ts';
 import { createPush } from './push/push.ts';
 import { loadSite } from './site/load.ts';
 import { openInfluxStore } from './store/influx/open.ts';
 import { openSqliteStores } from './store/sqlite/open.ts';
-import type { Pairs } from './store/sqlite/writer.ts';
 
 export interface App {
   readonly stop: () => Promise<void>;
@@ -37,22 +36,6 @@ const VERSION = '0.1.0';
 const NODE_CHECK_EVERY = 1;
 const RECENT_ALARMS = 200;
 
-/** Inputs that are read over the one which measures their excitation, by node. */
-const pairsOf = (channels: readonly ChannelPlan[]): Pairs => {
-  const pairs: Record<string, { input: string; over: string }[]> = {};
-  for (const { channel, conversions } of channels) {
-    for (const { excitation } of conversions) {
-      const known = (pairs[channel.node] ??= []);
-      const { input } = channel;
-      if (excitation === null || known.some((p) => p.input === input && p.over === excitation)) {
-        continue;
-      }
-      known.push({ input, over: excitation });
-    }
-  }
-  return pairs;
-};
-
 const readSiteFile = async (file: string): Promise<Site> => {
   const read = await loadSite(file);
   if (read.ok) return read.site;
@@ -60,30 +43,73 @@ const readSiteFile = async (file: string): Promise<Site> => {
   throw new Error(`${read.faults.length} faults\n${lines.join('\n')}`);
 };
 
-/** Starts everything in order, saying each step; rejects with the step that failed, and why. */
-export const startApp = async (config: Config, say: (line: string) => void): Promise<App> => {
-  const clock = systemClock;
-  const demo = config.siteFile === null;
-  const siteFile = config.siteFile ?? packageFile('server', 'demo', 'site.json');
-  const site = await readSiteFile(siteFile).catch((error: unknown) => {
-    throw new Error(`site file ${siteFile}: ${error instanceof Error ? error.message : ''}`);
-  });
-  const plan = planSite(site);
-  const pairs = pairsOf(plan.channels);
-  say(`Site: ${site.name}, ${plan.channels.length} channels${site.simulated ? ', SIMULATED' : ''}`);
+interface Stores {
+  readonly samples: SampleStore;
+  readonly records: RecordStore;
+  readonly close: () => Promise<void>;
+}
 
-  const embedded = await openSqliteStores(config.dataFolder, pairs);
-  const { records } = embedded;
-  const samples =
-    config.store === null ? embedded.samples : await openInfluxStore({ url: config.store, pairs });
-  say(`Store: ${config.store ?? `SQLite in ${config.dataFolder}`}`);
+/** Records are always in the data folder; samples too, unless another store is asked for. */
+const openStores = async (config: Config, pairs: ExcitationPairs): Promise<Stores> => {
+  const { samples, records } = await openSqliteStores(config.dataFolder, pairs);
+  const closeEmbedded = async () => {
+    await samples.close();
+    await records.close();
+  };
+  if (config.store === null) return { samples, records, close: closeEmbedded };
+  try {
+    const other = await openInfluxStore({ url: config.store, pairs });
+    const close = async () => {
+      await other.close();
+      await closeEmbedded();
+    };
+    return { samples: other, records, close };
+  } catch (error) {
+    await closeEmbedded();
+    throw error;
+  }
+};
 
+/** The limits of the site file, and over them what was changed since. */
+const limitsInForce = async (site: Site, records: RecordStore) => {
   const limits = new Map<string, readonly Limit[]>(
     channelsOf(site).map(({ channel }) => [channel.id, channel.limits]),
   );
   for (const change of await records.limitsInForce()) {
     if (limits.has(change.channel)) limits.set(change.channel, change.limits);
   }
+  return limits;
+};
+
+/** Starts everything in order, saying each step; rejects with the step that failed, and why. */
+export const startApp = async (config: Config, say: (line: string) => void): Promise<App> => {
+  const siteFile = config.siteFile ?? packageFile('server', 'demo', 'site.json');
+  const site = await readSiteFile(siteFile).catch((error: unknown) => {
+    throw new Error(`site file ${siteFile}: ${error instanceof Error ? error.message : ''}`);
+  });
+  const plan = planSite(site);
+  say(`Site: ${site.name}, ${plan.channels.length} channels${site.simulated ? ', SIMULATED' : ''}`);
+  const stores = await openStores(config, excitationPairs(plan.channels));
+  say(`Store: ${config.store ?? `SQLite in ${config.dataFolder}`}`);
+  try {
+    return await startOn(stores, site, siteFile, config, say);
+  } catch (error) {
+    await stores.close();
+    throw error;
+  }
+};
+
+const startOn = async (
+  stores: Stores,
+  site: Site,
+  siteFile: string,
+  config: Config,
+  say: (line: string) => void,
+): Promise<App> => {
+  const clock = systemClock;
+  const plan = planSite(site);
+  const { samples, records } = stores;
+  const limits = await limitsInForce(site, records);
   const tally = new Tally(site, await samples.tally());
   const alarms = new AlarmKeeper(
     plan.channels,
@@ -103,11 +129,11 @@ export const startApp = async (config: Config, say: (line: string) => void): Pro
     },
   });
 
-  const own = await embeddedBroker({ host: config.host, port: config.mqttPort, clock, say });
-  const source: FrameSource & { description(): string } =
-    config.broker === null
-      ? own
-      : externalBroker({ url: config.broker, clientId: `yieldward-${site.id}`, clock, say });
+  const { host, port, mqttPort, broker } = config;
+  const source: FrameSource =
+    broker === null
+      ? embeddedBroker({ host, port: mqttPort, clock, say })
+      : externalBroker({ url: broker, clientId: `yieldward-${site.id}`, clock, say });
   const upSince = clock.now();
   const health = (): Health => ({
     ok: trouble === null && source.connected(),
@@ -120,11 +146,11 @@ export const startApp = async (config: Config, say: (line: string) => void): Pro
     feed: broadcast.feed,
   });
   const app = createHttp({
-    ...{ core, metrics: createMetrics({ core, clock }), host: config.host, complain: say },
+    ...{ core, metrics: createMetrics({ core, clock }), host, complain: say },
     staticFolder: packageFile('dist', 'client'),
   });
-  const server = createServer(app);
-  const push = createPush({ server, core, clock, host: config.host });
+  const web = createWebServer(app);
+  const push = createPush({ server: web.server, core, clock, host });
   broadcast.add(push.feed);
   const known = new Set(site.nodes.map(({ id }) => id));
   const receive = createFlow({
@@ -144,40 +170,22 @@ export const startApp = async (config: Config, say: (line: string) => void): Pro
     {
       name: 'store',
       start: () => undefined,
-      stop: async () => {
-        await committer.stop();
-        if (samples !== embedded.samples) await samples.close();
-        await embedded.samples.close();
-        await records.close();
-      },
+      stop: () => committer.stop(),
     },
     {
       name: 'broker',
       start: async () => {
         await source.start(receive);
-        say(
-          config.broker === null ? `Broker: mqtt://${config.host}:${own.port()}` : 'Broker: there',
-        );
+        say(`Broker: ${source.description()}`);
       },
       stop: () => source.stop(),
     },
     {
       name: 'web page and API',
-      start: () =>
-        new Promise<void>((resolve, reject) => {
-          server.once('error', reject);
-          server.listen(config.port, config.host, () => {
-            resolve();
-          });
-        }),
+      start: () => web.listen(port, host),
       stop: async () => {
         await push.close();
-        server.closeAllConnections();
-        await new Promise<void>((resolve) => {
-          server.close(() => {
-            resolve();
-          });
-        });
+        await web.close();
       },
     },
     {
@@ -188,12 +196,11 @@ export const startApp = async (config: Config, say: (line: string) => void): Pro
       },
     },
   ];
-  if (demo) {
+  if (config.siteFile === null) {
     steps.push({
       name: 'simulated nodes',
       start: async () => {
-        const broker = `mqtt://127.0.0.1:${own.port()}`;
-        fleet = await startFleet({ site, siteFile, broker, log: say });
+        fleet = await startFleet({ site, siteFile, broker: source.address(), log: say });
         say(`Simulated nodes: ${[...fleet.processes.keys()].join(', ')}`);
       },
       stop: async () => {
@@ -202,7 +209,11 @@ export const startApp = async (config: Config, say: (line: string) => void): Pro
     });
   }
   const stop = await runSteps(steps, say);
-  const { port } = server.address() as AddressInfo;
-  say(`Ready: http://${config.host}:${port}`);
-  return { stop };
+  say(`Ready: http://${host}:${web.port()}`);
+  return {
+    stop: async () => {
+      await stop();
+      await stores.close();
+    },
+  };
 };

@@ -47,6 +47,10 @@ export interface FrameSource {
   stop(): Promise<void>;
   /** Is the broker in reach now? */
   connected(): boolean;
+  /** `mqtt://host:port` for nodes, once started; no password. */
+  address(): string;
+  /** For people: what it is and where. */
+  description(): string;
 }
 
 export interface StoredFrame {
@@ -78,6 +82,11 @@ export interface SeriesKey {
   readonly input: string;
   readonly over: string | null;
 }
+
+/** Inputs that are read over the one which measures their excitation, by node. */
+export type ExcitationPairs = Readonly<
+  Record<string, readonly { readonly input: string; readonly over: string }[]>
+>;
 
 export interface EnvelopeQuery {
   readonly series: SeriesKey;

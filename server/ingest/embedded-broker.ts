@@ -1,4 +1,4 @@
-import type { EventEmitter } from 'node:events';
+import { once, type EventEmitter } from 'node:events';
 import { createServer, type AddressInfo, type Server, type Socket } from 'node:net';
 import { Aedes, type AedesPublishPacket, type Client } from 'aedes';
 import { TOPIC_ROOT } from '../../shared/pipeline/1-decode/topics.ts';
@@ -9,8 +9,6 @@ import { announcedLength, readOn } from './read-on.ts';
 export interface EmbeddedBroker extends FrameSource {
   /** The port it listens on, once started. */
   port(): number;
-  /** For people: what it is and where. */
-  description(): string;
 }
 
 /** While fewer messages of a connection wait for their commit, reading goes on. */
@@ -25,19 +23,16 @@ const bytesOf = (payload: AedesPublishPacket['payload']): Uint8Array =>
  * out when the delivery is acknowledged, that is after the commit. Wills come the
  * same way. Nothing retained outlives the process.
  */
-export const embeddedBroker = async (options: {
+export const embeddedBroker = (options: {
   readonly host: string;
   readonly port: number;
   readonly clock: Clock;
   readonly say?: (line: string) => void;
-}): Promise<EmbeddedBroker> => {
+}): EmbeddedBroker => {
   const { host, clock, say } = options;
-  const aedes = await Aedes.createBroker({ queueLimit: UNDER_WAY });
-  (aedes as EventEmitter).on('error', (error: Error) => say?.(`broker: ${error.message}`));
-  /** What aedes itself allows: everything but its own $SYS. */
-  const allow = aedes.authorizePublish;
   const sockets = new Set<Socket>();
   const waiting = new WeakMap<Client, number>();
+  let broker: Aedes | null = null;
   let server: Server | null = null;
   let open = false;
 
@@ -50,7 +45,9 @@ export const embeddedBroker = async (options: {
     return () => waiting.set(client, (waiting.get(client) ?? 1) - 1);
   };
 
-  const handOver = (receive: (delivery: Delivery) => void) => {
+  const handOver = (aedes: Aedes, receive: (delivery: Delivery) => void) => {
+    /** What aedes itself allows: everything but its own $SYS. */
+    const allow = aedes.authorizePublish;
     aedes.authorizePublish = (client, packet, done) => {
       if (!packet.topic.startsWith(`${TOPIC_ROOT}/`)) return allow(client, packet, done);
       if (!open) return done(new Error('stopping'));
@@ -68,7 +65,7 @@ export const embeddedBroker = async (options: {
     };
   };
 
-  const attend = (socket: Socket) => {
+  const attend = (aedes: Aedes, socket: Socket) => {
     sockets.add(socket);
     socket.once('close', () => sockets.delete(socket));
     const client = aedes.handle(socket);
@@ -83,33 +80,41 @@ export const embeddedBroker = async (options: {
 
   const port = () => (server?.address() as AddressInfo | null)?.port ?? options.port;
 
+  const address = () => `mqtt://${host.includes(':') ? `[${host}]` : host}:${port()}`;
+
+  const stop = async () => {
+    open = false;
+    const listening = server;
+    if (listening?.listening) {
+      const closed = new Promise<void>((resolve) => listening.close(() => resolve()));
+      for (const socket of sockets) socket.destroy();
+      await closed;
+    }
+    const aedes = broker;
+    if (aedes) await new Promise<void>((resolve) => aedes.close(() => resolve()));
+  };
+
   return {
-    start: (receive) => {
-      handOver(receive);
-      const listening = createServer(attend);
+    start: async (receive) => {
+      const aedes = await Aedes.createBroker({ queueLimit: UNDER_WAY });
+      broker = aedes;
+      (aedes as EventEmitter).on('error', (error: Error) => say?.(`broker: ${error.message}`));
+      handOver(aedes, receive);
+      const listening = createServer((socket) => attend(aedes, socket));
       server = listening;
-      return new Promise((resolve, reject) => {
-        listening.on('error', (error) => {
-          say?.(`broker: ${error.message}`);
-          reject(error);
-        });
-        listening.listen(options.port, host, () => {
-          open = true;
-          resolve();
-        });
-      });
+      try {
+        await once(listening.listen(options.port, host), 'listening');
+      } catch (error) {
+        await stop();
+        throw error;
+      }
+      listening.on('error', (error) => say?.(`broker: ${error.message}`));
+      open = true;
     },
     connected: () => open,
     port,
-    description: () => `embedded broker, ${host} port ${port()}, MQTT 3.1.1`,
-    stop: async () => {
-      open = false;
-      const closed = new Promise<void>((resolve) =>
-        server ? server.close(() => resolve()) : resolve(),
-      );
-      for (const socket of sockets) socket.destroy();
-      await closed;
-      await new Promise<void>((resolve) => aedes.close(() => resolve()));
-    },
+    address,
+    description: () => `${address()}, embedded, MQTT 3.1.1`,
+    stop,
   };
 };

@@ -4,11 +4,6 @@ import type { Clock, FrameSource } from '../ports.ts';
 import { LONGEST_READ } from './decode.ts';
 import { deferPubacks } from './deferred-puback.ts';
 
-export interface ExternalBroker extends FrameSource {
-  /** For people: which broker, in which version of MQTT; no password. */
-  description(): string;
-}
-
 /** Unacknowledged messages that the broker may have under way to us. */
 const UNDER_WAY = 256;
 /** The broker keeps our session, and queues for it, while we are gone: a month, s. */
@@ -64,7 +59,7 @@ export const externalBroker = (options: {
   readonly clock: Clock;
   readonly protocolVersion?: 4 | 5;
   readonly say?: (line: string) => void;
-}): ExternalBroker => {
+}): FrameSource => {
   const { clock, clientId, protocolVersion, say } = options;
   const { protocol, host } = new URL(options.url);
   const place = `${protocol}//${host}`;
@@ -97,6 +92,7 @@ export const externalBroker = (options: {
 
   return {
     connected: () => client?.connected ?? false,
+    address: () => place,
     description: () =>
       `${place}, MQTT ${(client?.options.protocolVersion ?? protocolVersion) === 4 ? '3.1.1' : '5'}`,
     start: async (receive) => {

@@ -11,7 +11,7 @@ const FRAME = topicOf('n1', 'frame');
 
 const scene = async ({ acknowledging }: { acknowledging: boolean }) => {
   const said: string[] = [];
-  const source = await embeddedBroker({
+  const source = embeddedBroker({
     ...{ host: '127.0.0.1', port: 0, clock: fakeClock() },
     say: (line) => said.push(line),
   });
@@ -170,9 +170,9 @@ test('no bytes whatever after a CONNECT bring it down', async () => {
 
 test('a port that is taken is a refusal to start, and stopping is fine then', async () => {
   const { source } = await scene({ acknowledging: true });
-  expect(source.description()).toContain(`127.0.0.1 port ${source.port()},`);
+  expect(source.description()).toContain(`mqtt://127.0.0.1:${source.port()},`);
   const clock = fakeClock();
-  const second = await embeddedBroker({ host: '127.0.0.1', port: source.port(), clock });
+  const second = embeddedBroker({ host: '127.0.0.1', port: source.port(), clock });
   await expect(second.start(() => undefined)).rejects.toThrow(/EADDRINUSE/);
   expect(second.connected()).toBe(false);
   await second.stop();

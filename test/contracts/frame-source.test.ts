@@ -8,7 +8,7 @@ import { describeFrameSource } from './frame-source.ts';
 const clock = fakeClock();
 
 describeFrameSource('embedded broker', async () => {
-  const source = await embeddedBroker({ host: '127.0.0.1', port: 0, clock });
+  const source = embeddedBroker({ host: '127.0.0.1', port: 0, clock });
   return { source, url: () => `mqtt://127.0.0.1:${source.port()}` };
 });
 

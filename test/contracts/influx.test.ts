@@ -1,9 +1,9 @@
 import { afterAll, beforeAll } from 'vitest';
 import { openInfluxStore } from '../../server/store/influx/open.ts';
-import type { Pairs } from '../../server/store/sqlite/writer.ts';
 import { startInfluxd, type Influxd } from '../helpers/influxd.ts';
 import { describeSampleStore, PAIRS } from './sample-store.ts';
 import { testNames } from './store-names.ts';
+import type { ExcitationPairs } from '../../server/ports.ts';
 
 let influxd: Influxd;
 beforeAll(async () => {
@@ -13,7 +13,7 @@ afterAll(() => influxd.close());
 
 let places = 0;
 const newPlace = () => `place_${places++}`;
-const open = (place: string, pairs: Pairs) =>
+const open = (place: string, pairs: ExcitationPairs) =>
   openInfluxStore({ url: `influx+http://${influxd.host}/${place}`, pairs });
 
 describeSampleStore('InfluxDB 1.x', {

@@ -3,9 +3,9 @@ import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { afterAll } from 'vitest';
 import { openSqliteStores } from '../../server/store/sqlite/open.ts';
-import type { Pairs } from '../../server/store/sqlite/writer.ts';
 import { describeSampleStore, PAIRS } from './sample-store.ts';
 import { testNames } from './store-names.ts';
+import type { ExcitationPairs } from '../../server/ports.ts';
 
 const root = mkdtempSync(join(tmpdir(), 'yieldward-sqlite-'));
 afterAll(() => rmSync(root, { recursive: true, force: true }));
@@ -13,7 +13,7 @@ afterAll(() => rmSync(root, { recursive: true, force: true }));
 let places = 0;
 
 const newPlace = () => join(root, String(places++));
-const open = async (place: string, pairs: Pairs) => {
+const open = async (place: string, pairs: ExcitationPairs) => {
   const { samples, records } = await openSqliteStores(place, pairs);
   return {
     ...samples,

@@ -1,11 +1,10 @@
 import { expect, test } from 'vitest';
-import type { SampleStore } from '../../server/ports.ts';
-import type { Pairs } from '../../server/store/sqlite/writer.ts';
+import type { ExcitationPairs, SampleStore } from '../../server/ports.ts';
 import { epochSeconds, seconds } from '../../shared/model/units.ts';
 import { frameOf } from './sample-store.ts';
 
 const T0 = 1_800_000_000;
-const PAIR: Pairs = { n1: [{ input: 'a', over: 'ex' }] };
+const PAIR: ExcitationPairs = { n1: [{ input: 'a', over: 'ex' }] };
 
 const tenSeconds = (seq: number, node = 'n1') =>
   frameOf({
@@ -19,7 +18,7 @@ const tenSeconds = (seq: number, node = 'n1') =>
 /** What a store must do whatever nodes call themselves, and whatever pairs are named when. */
 export const testNames = (
   name: string,
-  open: (place: string, pairs: Pairs) => Promise<SampleStore>,
+  open: (place: string, pairs: ExcitationPairs) => Promise<SampleStore>,
   newPlace: () => string,
 ) => {
   test(`${name}: a node may bear the name of anything that objects inherit`, async () => {

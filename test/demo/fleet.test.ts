@@ -21,7 +21,7 @@ beforeAll(async () => {
 /** The server's broker and decoder, with all that came, and waiting for more without sleeping. */
 const listen = async () => {
   const decode = createDecode(site);
-  const broker = await embeddedBroker({ host: '127.0.0.1', port: 0, clock: fakeClock() });
+  const broker = embeddedBroker({ host: '127.0.0.1', port: 0, clock: fakeClock() });
   const came: Message[] = [];
   let wake = () => undefined as void;
   await broker.start((delivery) => {

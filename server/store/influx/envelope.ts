@@ -1,5 +1,5 @@
 import type { Envelope, EnvelopeQuery, SeriesKey } from '../../ports.ts';
-import { emptySummary, merge, summarise, type Summary } from '../sqlite/summary.ts';
+import { emptySummary, envelopeOf, merge, summarise, type Summary } from '../summary.ts';
 import { stepFor } from '../step.ts';
 import type { Boots } from './boots.ts';
 import { quoted, type Database } from './database.ts';
@@ -28,18 +28,7 @@ class Points {
   }
 
   envelope(from: number): Envelope {
-    const step = this.#step;
-    const entries = [...this.#by].sort(([a], [b]) => a - b);
-    const column = (figure: (summary: Summary, point: number) => number) =>
-      Float64Array.from(entries, ([point, summary]) => figure(summary, point));
-    return {
-      step,
-      t: column((_, point) => Math.max(from, point * step)),
-      min: column(({ min }) => min),
-      mean: column(({ sum, count }) => sum / count),
-      max: column(({ max }) => max),
-      count: column(({ count }) => count),
-    };
+    return envelopeOf(this.#by, this.#step, from);
   }
 }
 

@@ -8,9 +8,9 @@ import type {
   SampleStore,
   Stored,
   StoredFrame,
+  ExcitationPairs,
 } from '../../ports.ts';
-import type { SeriesInputs } from '../sqlite/summary.ts';
-import type { Pairs } from '../sqlite/writer.ts';
+import type { SeriesInputs } from '../summary.ts';
 import {
   bootKey,
   bootPoint,
@@ -37,12 +37,12 @@ const keyOf = (node: string, boot: string, seq: number): string => `${node} ${bo
  */
 class InfluxStore implements SampleStore {
   readonly #database: Database;
-  readonly #pairs: Pairs;
+  readonly #pairs: ExcitationPairs;
   readonly #lanes: Lanes;
   #boots: Boots;
   #last: Promise<unknown> = Promise.resolve();
 
-  constructor(database: Database, pairs: Pairs, boots: Boots) {
+  constructor(database: Database, pairs: ExcitationPairs, boots: Boots) {
     this.#database = database;
     this.#pairs = pairs;
     this.#boots = boots;
@@ -168,7 +168,7 @@ class InfluxStore implements SampleStore {
 
 export interface InfluxOptions {
   readonly url: string;
-  readonly pairs: Pairs;
+  readonly pairs: ExcitationPairs;
 }
 
 /**

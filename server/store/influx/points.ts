@@ -2,7 +2,7 @@ import type { IPoint } from 'influx';
 import { sampleCount, type RawArray } from '../../../shared/model/frame.ts';
 import type { StoredFrame } from '../../ports.ts';
 import { layoutText } from '../layout.ts';
-import { arraysOf, secondsOf, seriesOf, summarise, type SeriesInputs } from '../sqlite/summary.ts';
+import { arraysOf, secondsOf, seriesOf, summarise, type SeriesInputs } from '../summary.ts';
 import { nanosText } from './time.ts';
 
 /** What the database's float field cannot hold as it is: NaN, infinities, and the sign of −0. */

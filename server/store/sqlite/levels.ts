@@ -1,5 +1,5 @@
 import type { Database } from './schema.ts';
-import { emptySummary, merge, type Summary } from './summary.ts';
+import { emptySummary, merge, type Summary } from '../summary.ts';
 
 /** Buckets of level k are 4^k s wide; the widest is 18 h. */
 export const LEVELS = 9;

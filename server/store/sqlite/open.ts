@@ -1,9 +1,15 @@
 import { Worker } from 'node:worker_threads';
-import type { RecordStore, SampleStore, Stored, StoredFrame } from '../../ports.ts';
+import type {
+  ExcitationPairs,
+  RecordStore,
+  SampleStore,
+  Stored,
+  StoredFrame,
+} from '../../ports.ts';
 import { layoutText, packBody } from '../layout.ts';
 import { sampleCount } from '../../../shared/model/frame.ts';
 import type { Answer, Call, ThreadData } from './thread.ts';
-import type { PackedFrame, Pairs } from './writer.ts';
+import type { PackedFrame } from './writer.ts';
 
 interface Waiting {
   readonly resolve: (value: unknown) => void;
@@ -86,11 +92,17 @@ export interface SqliteStores {
  * writes and one reads, so that neither a disk nor a long look back ever holds up
  * what comes in. Rejects if the folder cannot be used.
  */
-export const openSqliteStores = async (folder: string, pairs: Pairs): Promise<SqliteStores> => {
+export const openSqliteStores = async (
+  folder: string,
+  pairs: ExcitationPairs,
+): Promise<SqliteStores> => {
   const writer = new Thread({ role: 'writer', folder, pairs });
   await writer.ready;
   const reader = new Thread({ role: 'reader', folder, pairs });
-  await reader.ready;
+  await reader.ready.catch(async (error: unknown) => {
+    await writer.end();
+    throw error;
+  });
   let open = 2;
   const closeOne = async (part: Call['part']) => {
     await writer.call(part, 'close', []);

@@ -1,5 +1,5 @@
 import type { Database } from './schema.ts';
-import type { SeriesInputs } from './summary.ts';
+import type { SeriesInputs } from '../summary.ts';
 
 /**
  * Retires the buckets of pairs that are named no more: should one be named again,

@@ -7,7 +7,7 @@ import {
   SUMMARY_FIGURES,
   type SeriesInputs,
   type Summary,
-} from './summary.ts';
+} from '../summary.ts';
 
 /** An envelope's part: what the samples of a stretch of time came to. */
 export interface Piece {

@@ -4,7 +4,7 @@ import { stepFor } from '../step.ts';
 import { bucketWidth, LEVELS } from './levels.ts';
 import { FrameReader, type Piece } from './pieces.ts';
 import { openFile, type Database } from './schema.ts';
-import { emptySummary, merge, type Summary } from './summary.ts';
+import { emptySummary, envelopeOf, merge, type Summary } from '../summary.ts';
 
 interface Source {
   readonly node: number;
@@ -55,17 +55,7 @@ export class SqliteReader {
         by.set(point, into);
       }
     }
-    const entries = [...by].sort(([a], [b]) => a - b);
-    const column = (figure: (summary: Summary, point: number) => number) =>
-      Float64Array.from(entries, ([point, summary]) => figure(summary, point));
-    return {
-      step,
-      t: column((_, point) => Math.max(from, point * step)),
-      min: column(({ min }) => min),
-      mean: column(({ sum, count }) => sum / count),
-      max: column(({ max }) => max),
-      count: column(({ count }) => count),
-    };
+    return envelopeOf(by, step, from);
   }
 
   samples({ node, input, from, to, atMost }: SampleQuery): RawRun[] {

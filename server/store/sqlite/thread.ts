@@ -2,12 +2,13 @@
 import { parentPort, workerData } from 'node:worker_threads';
 import { SqliteReader } from './reader.ts';
 import { SqliteRecords } from './records.ts';
-import { SqliteWriter, type Pairs } from './writer.ts';
+import type { ExcitationPairs } from '../../ports.ts';
+import { SqliteWriter } from './writer.ts';
 
 export interface ThreadData {
   readonly role: 'writer' | 'reader';
   readonly folder: string;
-  readonly pairs: Pairs;
+  readonly pairs: ExcitationPairs;
 }
 
 export interface Call {

@@ -1,5 +1,5 @@
 import { include, type Ranges } from '../../../shared/series/ranges.ts';
-import type { BootTally, Stored } from '../../ports.ts';
+import type { BootTally, ExcitationPairs, Stored } from '../../ports.ts';
 import { parseLayout, unpackBody } from '../layout.ts';
 import { Levels } from './levels.ts';
 import { retirePairs } from './pairs.ts';
@@ -13,7 +13,7 @@ import {
   summarise,
   SUMMARY_FIGURES,
   type SeriesInputs,
-} from './summary.ts';
+} from '../summary.ts';
 import { hasFrame, readTally } from './tally.ts';
 
 /** A frame ready to be written: its samples packed by `packBody`. */
@@ -29,9 +29,6 @@ export interface PackedFrame {
   readonly layout: string;
   readonly body: ArrayBuffer;
 }
-
-/** By node: inputs that are read over the input which measures their excitation. */
-export type Pairs = Readonly<Record<string, readonly SeriesInputs[]>>;
 
 interface Boot {
   readonly id: number;
@@ -55,7 +52,7 @@ const FLUSH_SECONDS = 1;
 /** The one who writes samples. Synchronous: lives on a thread of its own. */
 export class SqliteWriter {
   readonly #database: Database;
-  readonly #pairs: Pairs;
+  readonly #pairs: ExcitationPairs;
   readonly #levels: Levels;
   readonly #statements;
   readonly #nodes = new Map<string, { id: number; longest: number }>();
@@ -64,7 +61,7 @@ export class SqliteWriter {
   #sinceFlush = 0;
   #flushedAt = -Infinity;
 
-  constructor(folder: string, pairs: Pairs) {
+  constructor(folder: string, pairs: ExcitationPairs) {
     this.#database = openFile(folder, 'samples');
     this.#pairs = pairs;
     this.#levels = new Levels(this.#database);

@@ -1,4 +1,5 @@
-import type { InputBlock } from '../../../shared/model/frame.ts';
+import type { Envelope } from '../ports.ts';
+import type { InputBlock } from '../../shared/model/frame.ts';
 
 /** Extremes and sum over the finite samples of a stretch of one series. */
 export interface Summary {
@@ -88,4 +89,23 @@ export const arraysOf = (
   const raw = blocks.find((block) => block.input === input)?.samples;
   const by = over === null ? null : blocks.find((block) => block.input === over)?.samples;
   return raw === undefined || by === undefined ? null : [raw, by];
+};
+
+/** What points hold, by their number on the grid of `step` s, as columns ascending in time. */
+export const envelopeOf = (
+  by: ReadonlyMap<number, Summary>,
+  step: number,
+  from: number,
+): Envelope => {
+  const entries = [...by].sort(([a], [b]) => a - b);
+  const column = (figure: (summary: Summary, point: number) => number) =>
+    Float64Array.from(entries, ([point, summary]) => figure(summary, point));
+  return {
+    step,
+    t: column((_, point) => Math.max(from, point * step)),
+    min: column(({ min }) => min),
+    mean: column(({ sum, count }) => sum / count),
+    max: column(({ max }) => max),
+    count: column(({ count }) => count),
+  };
 };
