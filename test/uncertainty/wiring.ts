@@ -1,0 +1,64 @@
+import fc from 'fast-check';
+import type { BridgeCircuit, BridgeResponse, Leads } from '../../shared/model/calibration.ts';
+import { ohm, ratio } from '../../shared/model/units.ts';
+
+/** A bridge of GF 2 and 120 Ω without leads or unbalance, changed where a test needs it. */
+export const bridge = (
+  circuit: BridgeCircuit,
+  change: Partial<BridgeResponse> = {},
+): BridgeResponse => ({
+  kind: 'bridge',
+  circuit,
+  gaugeFactor: 2,
+  gaugeResistance: ohm(120),
+  poisson: 0.3,
+  leads: { kind: 'none' },
+  zero: ratio(0),
+  ...change,
+});
+
+const HALVES: readonly BridgeCircuit[] = [
+  'quarter',
+  'half-poisson',
+  'half-bending',
+  'half-opposite',
+];
+const FULLS: readonly BridgeCircuit[] = [
+  'full-bending',
+  'full-bending-poisson',
+  'full-axial-poisson',
+  'full-torsion',
+];
+
+const resistance = fc.double({ min: 0.1, max: 10, noNaN: true }).map(ohm);
+const halfLeads: fc.Arbitrary<Leads> = fc.oneof(
+  fc.constant<Leads>({ kind: 'none' }),
+  resistance.map((r): Leads => ({ kind: 'three-wire', resistance: r })),
+  fc
+    .tuple(resistance, fc.boolean())
+    .map(([r, trimmed]): Leads => ({ kind: 'two-wire', resistance: r, trimmed })),
+);
+const fullLeads: fc.Arbitrary<Leads> = fc.oneof(
+  fc.constant<Leads>({ kind: 'none' }),
+  resistance.map((r): Leads => ({ kind: 'excitation', resistance: r })),
+);
+
+/** Any circuit with any leads it may have, unbalanced by up to 2 % of an arm. */
+export const anyBridge: fc.Arbitrary<BridgeResponse> = fc
+  .oneof(
+    fc.tuple(fc.constantFrom(...HALVES), halfLeads),
+    fc.tuple(fc.constantFrom(...FULLS), fullLeads),
+  )
+  .chain(([circuit, leads]) =>
+    fc
+      .record({
+        gaugeFactor: fc.double({ min: 1.8, max: 2.3, noNaN: true }),
+        gaugeResistance: fc.constantFrom(120, 350, 1000).map(ohm),
+        poisson: fc.double({ min: 0.2, max: 0.4, noNaN: true }),
+        zero: fc.double({ min: -5e-3, max: 5e-3, noNaN: true }).map(ratio),
+      })
+      .map((data) => bridge(circuit, { leads, ...data })),
+  );
+
+/** Strain up to the 5 % that the longest gauges bear, m/m. */
+export const anyStrain = fc.double({ min: -0.05, max: 0.05, noNaN: true });
