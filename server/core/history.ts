@@ -23,8 +23,8 @@ interface Window {
 /** The window cut where the record in force changes; what lies before the first record is left out. */
 const windows = (plan: ChannelPlan, from: number, to: number): Window[] =>
   plan.conversions.flatMap((conversion, i) => {
-    const start = Math.max(from, conversion.record.validFrom);
-    const end = Math.min(to, plan.conversions[i + 1]?.record.validFrom ?? Infinity);
+    const start = Math.max(from, conversion.from);
+    const end = Math.min(to, plan.conversions[i + 1]?.from ?? Infinity);
     return start < end ? [{ from: start, to: end, conversion }] : [];
   });
 

@@ -2,7 +2,7 @@ import type { Limit, LimitContext } from '../../shared/model/limit.ts';
 import type { Channel, Material, Measurand } from '../../shared/model/site.ts';
 import type { Share } from '../../shared/model/units.ts';
 import { stressPerStrain, yieldFor } from '../../shared/pipeline/4-stress/stress.ts';
-import { readCalibration } from './calibration.ts';
+import { readCalibration, readZeros } from './calibration.ts';
 import { readLimits } from './limits.ts';
 import type { Names } from './names.ts';
 import type { InputEntry, NodeEntry } from './nodes.ts';
@@ -73,15 +73,17 @@ export const readChannel = (
   const inputEntry = nodeEntry?.inputs.refer(`${at}/input`);
   takeInput(reading, at, inputEntry);
   const input = reading.value<string>(`${at}/input`);
-  const calibration = readCalibration(reading, `${at}/calibration`, {
+  const context = {
     ...{ measurand, material, node: nodeEntry, ids: site.records },
     input: { name: input, unit: inputEntry?.unit },
-  });
+  };
+  const calibration = readCalibration(reading, `${at}/calibration`, context);
+  const zeros = readZeros(reading, `${at}/zeros`, context);
   const limits = limitsOf(reading, at, measurand, material, site);
   const id = reading.value<string>(`${at}/id`);
   const name = reading.value<string>(`${at}/name`);
   const node = reading.value<string>(`${at}/node`);
   if (id === undefined || name === undefined || node === undefined) return [];
   if (measurand === undefined || input === undefined) return [];
-  return [{ id, name, measurand, node, input, calibration, limits }];
+  return [{ id, name, measurand, node, input, calibration, zeros, limits }];
 };

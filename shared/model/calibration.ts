@@ -1,4 +1,4 @@
-import type { EpochSeconds, Ohm, Ratio, Volt } from './units.ts';
+import type { Celsius, EpochSeconds, Newton, Ohm, Ratio, Volt } from './units.ts';
 
 /** Where the excitation of a bridge is known from. */
 export type Excitation =
@@ -74,12 +74,40 @@ export interface LinearResponse {
 
 export type Response = BridgeResponse | LinearResponse;
 
-/** In force from `validFrom` until the next record of the same channel. Added, never edited. */
-export interface CalibrationRecord {
+/** What every record has. Records are added, never edited; see `inForce` for which one governs. */
+interface RecordHead {
+  /** Once in the site. */
   readonly id: string;
   readonly validFrom: EpochSeconds;
   readonly author: string;
   readonly reason: string;
+  /** When it was added on screen; null: it came with the site file. */
+  readonly recordedAt: EpochSeconds | null;
+  /** The earlier record of the same kind and channel that it takes the place of; null: none. */
+  readonly corrects: string | null;
+}
+
+/** How a channel's raw figure becomes its value. */
+export interface CalibrationRecord extends RecordHead {
   readonly signal: Signal;
   readonly response: Response;
+}
+
+/** What was on the structure when a zero was read. */
+export type StructureState =
+  { readonly kind: 'unloaded' } | { readonly kind: 'loaded'; readonly load: Newton };
+
+/** A zero that was read: takes the place of the zero in the calibration record from then on. */
+export interface ZeroRecord extends RecordHead {
+  /**
+   * Mean of the raw figures, as the node gives them, over V of excitation if that is
+   * measured. Raw, so that a corrected scale or excitation corrects the zero as well.
+   */
+  readonly raw: number;
+  /** Standard deviation of the raw figures it is the mean of. */
+  readonly noise: number;
+  readonly samples: number;
+  /** Of the structure at the gauge, if it was known. */
+  readonly temperature: Celsius | null;
+  readonly state: StructureState;
 }

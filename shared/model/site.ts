@@ -1,4 +1,4 @@
-import type { CalibrationRecord } from './calibration.ts';
+import type { CalibrationRecord, ZeroRecord } from './calibration.ts';
 import type { Limit } from './limit.ts';
 import type {
   CubicMetre,
@@ -47,8 +47,10 @@ export interface Channel {
   readonly measurand: Measurand;
   readonly node: string;
   readonly input: string;
-  /** Oldest first; at least one. */
+  /** In the order in which they were added; at least one. */
   readonly calibration: readonly CalibrationRecord[];
+  /** In the order in which they were added. */
+  readonly zeros: readonly ZeroRecord[];
   readonly limits: readonly Limit[];
 }
 

@@ -1,18 +1,18 @@
 /** The way of a frame, in the order the data meets it: decode → ratio → strain → stress → alarm. */
 import type { ChannelBlock, Quality } from '../model/block.ts';
-import type { CalibrationRecord } from '../model/calibration.ts';
-import { compose, type FractionalLinear } from '../model/fractional-linear.ts';
+import { apply, compose, type FractionalLinear } from '../model/fractional-linear.ts';
 import { sampleCount, type Frame, type InputBlock } from '../model/frame.ts';
+import { inForce, type InForce } from '../model/in-force.ts';
 import type { LimitContext } from '../model/limit.ts';
 import { channelsOf, type Channel, type Member, type Site } from '../model/site.ts';
+import { ratio } from '../model/units.ts';
 import { excitationInput, signalMap } from './2-ratio/signal.ts';
 import { bridgeStrain, linearValue } from './3-strain/bridge.ts';
 import { stressPerStrain, yieldFor } from './4-stress/stress.ts';
 import { convert, convertOver, type Range } from './convert.ts';
 
-/** A calibration record made ready: raw figure (over excitation, if measured) → channel's SI value. */
-export interface Conversion {
-  readonly record: CalibrationRecord;
+/** Records made ready: raw figure (over excitation, if measured) → channel's SI value. */
+export interface Conversion extends InForce {
   readonly excitation: string | null;
   readonly map: FractionalLinear;
 }
@@ -35,16 +35,20 @@ export interface SitePlan {
   readonly readers: ReadonlyMap<string, ReadonlyMap<string, readonly ChannelPlan[]>>;
 }
 
-export const conversionOf = (record: CalibrationRecord): Conversion => ({
-  record,
-  excitation: excitationInput(record.signal),
-  map: compose(
-    signalMap(record.signal),
-    record.response.kind === 'bridge'
-      ? bridgeStrain(record.response)
-      : linearValue(record.response),
-  ),
-});
+export const conversionOf = (governing: InForce): Conversion => {
+  const { record, zero } = governing;
+  const { signal, response } = record;
+  const toSignal = signalMap(signal);
+  const own = zero === null ? response.zero : apply(toSignal, zero.raw);
+  const toValue =
+    response.kind === 'bridge'
+      ? bridgeStrain({ ...response, zero: ratio(own) })
+      : linearValue({ ...response, zero: own });
+  return { ...governing, excitation: excitationInput(signal), map: compose(toSignal, toValue) };
+};
+
+export const conversionsOf = ({ calibration, zeros }: Channel): readonly Conversion[] =>
+  inForce(calibration, zeros).map(conversionOf);
 
 export const limitContextOf = (channel: Channel, member: Member, site: Site): LimitContext => ({
   measurand: channel.measurand,
@@ -63,7 +67,7 @@ export const planSite = (site: Site): SitePlan => {
     channel,
     member,
     context: limitContextOf(channel, member, site),
-    conversions: channel.calibration.map(conversionOf),
+    conversions: conversionsOf(channel),
     range: rangeOf(channel.node, channel.input),
     excitationRange: (input) => rangeOf(channel.node, input),
   }));
@@ -76,17 +80,17 @@ export const planSite = (site: Site): SitePlan => {
   return { channels, readers };
 };
 
-/** Place of the record in force at time `t` (s); −1 before the first. */
+/** Place of the conversion in force at time `t` (s); −1 before the first. */
 export const conversionAt = (conversions: readonly Conversion[], t: number): number =>
-  conversions.findLastIndex(({ record }) => record.validFrom <= t);
+  conversions.findLastIndex(({ from }) => from <= t);
 
-/** Samples [from, to) that one record governs. */
+/** End of the samples from `from` on that one conversion governs. */
 const stretchBounds = (conversions: readonly Conversion[], frame: Frame, from: number): number => {
   const count = sampleCount(frame);
   const at = conversionAt(conversions, frame.t0 + from * frame.dt);
   const next = conversions[at + 1];
   if (!next || !(frame.dt > 0)) return count;
-  return Math.min(count, Math.ceil((next.record.validFrom - frame.t0) / frame.dt));
+  return Math.min(count, Math.ceil((next.from - frame.t0) / frame.dt));
 };
 
 const convertStretch = (

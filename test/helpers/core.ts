@@ -27,6 +27,8 @@ const record = (signal: Signal, response: CalibrationRecord['response']): Calibr
   validFrom: epochSeconds(1_700_000_000),
   author: 'Simulated technician',
   reason: 'Gauge data off the packet',
+  recordedAt: null,
+  corrects: null,
   signal,
   response,
 });
@@ -51,7 +53,7 @@ const channel = (
   limits: readonly Limit[] = [],
 ): Channel => ({
   ...{ id, name: `Channel ${id}`, measurand, node: 'n1', input: id },
-  ...{ calibration: [record(signal, response)], limits },
+  ...{ calibration: [record(signal, response)], zeros: [], limits },
 });
 
 export const CAUTION: Limit = {

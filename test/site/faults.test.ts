@@ -37,7 +37,7 @@ test('ten faults come as ten, each with its place, of the schema and beyond it a
       [`${record(BENDING)}/response/gauge_factor`]: undefined,
       [`${TIP}/input`]: 's99',
       [`${SAG}/limits/0/basis`]: 'force_kN',
-      [`${HOOK}/calibration/1/valid_from`]: '2023-01-01T00:00:00Z',
+      [`${HOOK}/calibration/1/valid_from`]: inDemo(`${HOOK}/calibration/0/valid_from`),
       '/structures/0/elevations/2/members/0': 'T2',
     }),
   );
@@ -130,5 +130,50 @@ describe('what the schema cannot judge, one at a time: where, and what it says',
     expect(path).toBe(place ?? pointer);
     expect(expected).toContain(words);
     expect(came).not.toBe('');
+  });
+});
+
+describe('records that follow one another', () => {
+  const first = inDemo(record(TIP)) as Record<string, unknown>;
+  const list = (...more: Record<string, unknown>[]) => ({
+    [`${TIP}/calibration`]: [first, ...more.map((m) => ({ ...first, ...m }))],
+  });
+  const later = { id: 'later', valid_from: '2025-01-01T00:00:00Z' };
+
+  test('a correction begins where the corrected record began, or elsewhere', () => {
+    expect(faultsOf(demoWith(list({ id: 'x', corrects: first.id })))).toEqual([]);
+    expect(
+      faultsOf(
+        demoWith(
+          list(later, { ...later, id: 'x', corrects: 'later', valid_from: '2025-02-01T00:00:00Z' }),
+        ),
+      ),
+    ).toEqual([]);
+  });
+
+  test('only an earlier record of the channel can be corrected, and each once', () => {
+    expect(faultOf(list({ ...later, corrects: 'B1-end-web-0-cal1' }))).toEqual({
+      path: `${TIP}/calibration/1/corrects`,
+      expected: `an earlier record of this channel: ${String(first.id)}`,
+      came: '"B1-end-web-0-cal1"',
+    });
+    const twice = list({ id: 'x', corrects: first.id }, { id: 'y', corrects: first.id });
+    const [once] = faultsOf(demoWith(twice));
+    expect(once).toMatchObject({ path: `${TIP}/calibration/2/corrects` });
+  });
+
+  test('a zero in another unit than its input, and a load that is not stated, are faults', () => {
+    const zero = {
+      ...{ id: 'z1', valid_from: '2025-01-01T00:00:00Z', author: 'A', reason: 'R', unit: '/' },
+      ...{ raw: 1e-4, noise: 1e-7, samples: 100, state: { kind: 'loaded', load_kN: 10 } },
+    };
+    const withZero = (over: object) => ({ [`${TIP}/zeros`]: [{ ...zero, ...over }] });
+    expect(faultsOf(demoWith(withZero({})))).toEqual([]);
+    expect(faultOf(withZero({ unit: 'V' }))).toMatchObject({
+      path: `${TIP}/zeros/0/unit`,
+      expected: '"/", the unit of the input',
+    });
+    expect(faultOf(withZero({ state: { kind: 'loaded' } })).path).toContain('/zeros/0/state');
+    expect(faultOf(withZero({ samples: 0 })).path).toBe(`${TIP}/zeros/0/samples`);
   });
 });

@@ -28,6 +28,15 @@ const counts = (as: string, extra: Readonly<Record<string, Schema>> = {}): Schem
     ...extra,
   });
 
+const RECORD_HEAD = {
+  id: text('Unique in the site'),
+  validFrom: time('Begin'),
+  author: text('Who wrote it'),
+  reason: text('Why'),
+  recordedAt: orNull(time('When it was added'), 'null: it came with the site file'),
+  corrects: orNull(text('Id'), 'The record that it takes the place of; null: none'),
+};
+
 /** The site as it was checked: shared/model/site.ts and calibration.ts in JSON Schema. Figures are SI. */
 export const SITE_SCHEMAS: Readonly<Record<string, Schema>> = {
   Site: map('What is watched', {
@@ -91,16 +100,26 @@ export const SITE_SCHEMAS: Readonly<Record<string, Schema>> = {
     measurand: ref('Measurand'),
     node: text('Id of the node that measures it'),
     input: text('Name of the input on that node'),
-    calibration: { ...list(ref('CalibrationRecord'), 'Oldest first'), minItems: 1 },
+    calibration: { ...list(ref('CalibrationRecord'), 'In the order added'), minItems: 1 },
+    zeros: list(ref('ZeroRecord'), 'In the order added'),
     limits: list(ref('Limit'), 'As the site file has them; /api/channels has those in force'),
   }),
   CalibrationRecord: map('In force until the next of its channel', {
-    id: text('Unique in the channel'),
-    validFrom: time('Begin'),
-    author: text('Who wrote it'),
-    reason: text('Why'),
+    ...RECORD_HEAD,
     signal: ref('Signal'),
     response: ref('Response'),
+  }),
+  ZeroRecord: map('A zero that was read, in place of the one in the calibration record', {
+    ...RECORD_HEAD,
+    raw: figure('Mean of the raw figures, over V of excitation if that is measured'),
+    noise: figure('Their standard deviation'),
+    samples: figure('How many they were'),
+    temperature: orNull(figure('°C'), 'Of the structure at the gauge; null: not known'),
+    state: oneOf(
+      'What was on the structure',
+      map('Nothing but its own weight', { kind: exactly('unloaded') }),
+      map('A load', { kind: exactly('loaded'), load: figure('N') }),
+    ),
   }),
   Excitation: oneOf(
     'Where the excitation of a bridge is known from',
