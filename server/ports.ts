@@ -1,5 +1,6 @@
 /** The border of the server: what flow.ts needs of the world, each with siblings that provide it. */
 import type { Frame, InputBlock, Refusal, Result } from '../shared/model/frame.ts';
+import type { ZeroRecord } from '../shared/model/calibration.ts';
 import type { AlarmEvent, Limit } from '../shared/model/limit.ts';
 import type { Site } from '../shared/model/site.ts';
 import type { EpochSeconds } from '../shared/model/units.ts';
@@ -149,6 +150,19 @@ export interface LimitChange {
   readonly reason: string;
 }
 
+/** The site file as it was from `at` on. Revisions are added, never edited. */
+export interface SiteRevision {
+  /** 1, 2, 3, … */
+  readonly revision: number;
+  readonly at: EpochSeconds;
+  readonly author: string;
+  readonly reason: string;
+  /** file: read at start; screen: changed while running. */
+  readonly origin: 'file' | 'screen';
+  /** The site file, JSON. */
+  readonly text: string;
+}
+
 /** What people and alarms wrote: small, kept for ever, added to only. */
 export interface RecordStore {
   /** Durable when it resolves; an event whose id is there already is left as it is. */
@@ -160,7 +174,29 @@ export interface RecordStore {
   addLimitChange(change: LimitChange): Promise<void>;
   /** The last change of each channel. */
   limitsInForce(): Promise<readonly LimitChange[]>;
+  /** Both durable when it resolves, or neither; rejects for a revision that is there already. */
+  addSiteRevision(revision: SiteRevision, limits: readonly LimitChange[]): Promise<void>;
+  /** The newest; null before the first. */
+  siteRevision(): Promise<SiteRevision | null>;
+  /** Newest first, without their text. */
+  siteRevisions(atMost: number): Promise<readonly Omit<SiteRevision, 'text'>[]>;
   close(): Promise<void>;
+}
+
+export type SiteReading =
+  | { readonly ok: true; readonly site: Site }
+  | { readonly ok: false; readonly faults: readonly Fault[] };
+
+/** The site file as a format: what it says, and the changes that Yieldward itself makes in one. */
+export interface SiteFormat {
+  /** A checked site, or everything that is wrong with the text at once. */
+  read(text: string): SiteReading;
+  /** With these limits in place of a channel's own, by channel id. */
+  withLimits(text: string, limits: ReadonlyMap<string, readonly Limit[]>): string;
+  /** With `recorded_at` on each record that has none and that `before` does not have. */
+  stamped(text: string, before: string, at: EpochSeconds): string;
+  /** With a zero added to its channel. */
+  withZero(text: string, channel: string, zero: ZeroRecord): string;
 }
 
 export interface Clock {

@@ -38,6 +38,23 @@ const namesFor = (measurand: Measurand): string =>
     .map(([name]) => name)
     .join(', ');
 
+/** More digits than anybody types; fewer than bring the last bit of a double to light. */
+const DIGITS = 12;
+
+/** A limit as the file has it, in its own basis and unit. */
+export const writeLimit = (limit: Limit, measurand: Measurand): LimitOfFile => {
+  const entry = Object.entries<Basis>(BASES).find(
+    ([, { basis, measurands }]) => basis === limit.basis && measurands.includes(measurand),
+  );
+  if (!entry) throw new RangeError(`limit: expected a basis of ${measurand}, came ${limit.basis}`);
+  const [name, { si }] = entry;
+  const inFile = (figure: number) => Number((figure / si).toPrecision(DIGITS));
+  return {
+    ...{ level: limit.level, basis: name as LimitOfFile['basis'], value: inFile(limit.value) },
+    ...{ deadband: inFile(limit.deadband), on_delay_s: limit.onDelay },
+  };
+};
+
 const readLimit = (reading: Reading, at: string, measurand: Measurand): Limit | null => {
   const limit = reading.value<LimitOfFile>(at);
   if (!limit) return null;

@@ -1,16 +1,11 @@
-import type { Fault } from '../../shared/model/fault.ts';
-import type { Site } from '../../shared/model/site.ts';
 import { share } from '../../shared/model/units.ts';
+import type { SiteReading } from '../ports.ts';
 import { readDefaultLimits } from './limits.ts';
 import { Names } from './names.ts';
 import { readNodes } from './nodes.ts';
 import { Reading } from './reading.ts';
 import { shapeFaults } from './shape.ts';
 import { readStructures } from './structures.ts';
-
-export type SiteReading =
-  | { readonly ok: true; readonly site: Site }
-  | { readonly ok: false; readonly faults: readonly Fault[] };
 
 /**
  * A site file's content to a checked site in SI units, or everything that is

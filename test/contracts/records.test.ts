@@ -1,7 +1,8 @@
 import { mkdtempSync, rmSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
-import { afterAll, expect, test } from 'vitest';
+import { afterAll, expect, onTestFinished, test } from 'vitest';
+import type { SiteRevision } from '../../server/ports.ts';
 import { openSqliteStores } from '../../server/store/sqlite/open.ts';
 import type { AlarmEvent, Limit } from '../../shared/model/limit.ts';
 import { epochSeconds, seconds } from '../../shared/model/units.ts';
@@ -54,6 +55,40 @@ test('alarm events and limit changes stay, each once, across a restart', async (
   ]);
   await again.samples.close();
   await again.records.close();
+});
+
+test('revisions of the site stay, each once, and a records file of version 1 is brought on', async () => {
+  const folder = join(root, 'c');
+  const { default: Database } = await import('better-sqlite3');
+  const first = await openSqliteStores(folder, {});
+  await first.records.close();
+  await first.samples.close();
+  const file = new Database(join(folder, 'records.sqlite'));
+  file.exec('DROP TABLE site_revision');
+  file.pragma('user_version = 1');
+  file.close();
+
+  const again = await openSqliteStores(folder, {});
+  onTestFinished(async () => {
+    await again.records.close();
+    await again.samples.close();
+  });
+  expect(await again.records.siteRevision()).toBeNull();
+  const revision: SiteRevision = {
+    ...{ revision: 1, at: epochSeconds(5), author: 'A', reason: 'first' },
+    ...{ origin: 'file', text: '{"format":1}' },
+  };
+  await again.records.addSiteRevision(revision, []);
+  const limitChange = { channel: 'c1', limits, at: epochSeconds(5), author: 'A', reason: 'R' };
+  await expect(again.records.addSiteRevision(revision, [limitChange])).rejects.toThrow();
+  expect(await again.records.limitsInForce()).toEqual([]);
+  const second: SiteRevision = { ...revision, revision: 2, origin: 'screen', text: '{}' };
+  await again.records.addSiteRevision(second, [limitChange]);
+  expect(await again.records.limitsInForce()).toEqual([limitChange]);
+  expect(await again.records.siteRevision()).toEqual(second);
+  const { text: _, ...head } = second;
+  expect(await again.records.siteRevisions(1)).toEqual([head]);
+  expect(await again.records.siteRevisions(9)).toHaveLength(2);
 });
 
 test('a store that a newer version wrote is not touched, and says so', async () => {

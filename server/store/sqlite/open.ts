@@ -134,6 +134,9 @@ export const openSqliteStores = async (
     lastAlarmEvents: () => writer.call('records', 'lastAlarmEvents', []),
     addLimitChange: (change) => writer.call('records', 'addLimitChange', [change]),
     limitsInForce: () => writer.call('records', 'limitsInForce', []),
+    addSiteRevision: (...args) => writer.call('records', 'addSiteRevision', args),
+    siteRevision: () => writer.call('records', 'siteRevision', []),
+    siteRevisions: (atMost) => writer.call('records', 'siteRevisions', [atMost]),
     close: () => closeOne('records'),
   };
   return { samples, records };

@@ -1,5 +1,5 @@
 import type { AlarmEvent, Limit } from '../../../shared/model/limit.ts';
-import type { LimitChange } from '../../ports.ts';
+import type { LimitChange, SiteRevision } from '../../ports.ts';
 import { openFile, type Database } from './schema.ts';
 
 /** What people and alarms wrote. Synchronous: lives on the writer's thread. */
@@ -46,6 +46,32 @@ export class SqliteRecords {
       )
       .all() as (Omit<LimitChange, 'limits'> & { limits: string })[];
     return rows.map((row) => ({ ...row, limits: JSON.parse(row.limits) as Limit[] }));
+  }
+
+  addSiteRevision(revision: SiteRevision, limits: readonly LimitChange[]): void {
+    const insert = this.#database.prepare(
+      'INSERT INTO site_revision VALUES (@revision, @at, @author, @reason, @origin, @text)',
+    );
+    this.#database.transaction(() => {
+      insert.run(revision);
+      for (const change of limits) this.addLimitChange(change);
+    })();
+  }
+
+  siteRevision(): SiteRevision | null {
+    const row = this.#database
+      .prepare('SELECT * FROM site_revision ORDER BY revision DESC LIMIT 1')
+      .get() as SiteRevision | undefined;
+    return row ?? null;
+  }
+
+  siteRevisions(atMost: number): Omit<SiteRevision, 'text'>[] {
+    return this.#database
+      .prepare(
+        'SELECT revision, at, author, reason, origin FROM site_revision ' +
+          'ORDER BY revision DESC LIMIT ?',
+      )
+      .all(atMost) as Omit<SiteRevision, 'text'>[];
   }
 
   close(): void {

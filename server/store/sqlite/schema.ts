@@ -44,14 +44,22 @@ const RECORDS = `
     at REAL NOT NULL, author TEXT NOT NULL, reason TEXT NOT NULL);
 `;
 
-const FILES = {
-  samples: { file: 'samples.sqlite', schema: SAMPLES, version: 1 },
-  records: { file: 'records.sqlite', schema: RECORDS, version: 1 },
-} as const;
+const SITE_REVISIONS = `
+  CREATE TABLE site_revision (
+    revision INTEGER PRIMARY KEY, at REAL NOT NULL, author TEXT NOT NULL, reason TEXT NOT NULL,
+    origin TEXT NOT NULL, text TEXT NOT NULL);
+`;
+
+/** What makes each version out of the one before; a file is at the version of as many as it has. */
+const FILES: Readonly<Record<'samples' | 'records', readonly string[]>> = {
+  samples: [SAMPLES],
+  records: [RECORDS, SITE_REVISIONS],
+};
 
 /** Opens or makes a file of the data folder; everything committed is on disk (WAL, full sync). */
 export const openFile = (folder: string, which: keyof typeof FILES): Database.Database => {
-  const { file, schema, version } = FILES[which];
+  const versions = FILES[which];
+  const file = `${which}.sqlite`;
   mkdirSync(folder, { recursive: true });
   const database = new Database(join(folder, file));
   database.pragma('page_size = 4096');
@@ -60,18 +68,17 @@ export const openFile = (folder: string, which: keyof typeof FILES): Database.Da
   database.pragma('wal_autocheckpoint = 4000');
   database.pragma('cache_size = -16000');
   const found = Number(database.pragma('user_version', { simple: true }));
-  if (found > version) {
+  if (found > versions.length) {
     database.close();
     throw new Error(
-      `${file}: expected version ${version} or older, came version ${found}; ` +
+      `${file}: expected version ${versions.length} or older, came version ${found}; ` +
         'a newer Yieldward wrote it, start that one',
     );
   }
-  if (found === 0) {
-    database.transaction(() => {
-      database.exec(schema);
-      database.pragma(`user_version = ${version}`);
-    })();
-  }
+  if (found === versions.length) return database;
+  database.transaction(() => {
+    for (const change of versions.slice(found)) database.exec(change);
+    database.pragma(`user_version = ${versions.length}`);
+  })();
   return database;
 };
