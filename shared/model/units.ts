@@ -20,7 +20,11 @@ export type NewtonMetre = Quantity<'N m'>;
 export type Pascal = Quantity<'Pa'>;
 export type Volt = Quantity<'V'>;
 export type Ohm = Quantity<'Ohm'>;
+export type Watt = Quantity<'W'>;
+export type WattPerSquareMetre = Quantity<'W/m2'>;
 export type Celsius = Quantity<'Cel'>;
+/** A plane angle, counter-clockwise positive. */
+export type Radian = Quantity<'rad'>;
 /** Bridge output over excitation, V/V. */
 export type Ratio = Quantity<'V/V'>;
 /** Strain, m/m, tension positive. */
@@ -39,7 +43,10 @@ export const newtonMetre = (n: number) => n as NewtonMetre;
 export const pascal = (n: number) => n as Pascal;
 export const volt = (n: number) => n as Volt;
 export const ohm = (n: number) => n as Ohm;
+export const watt = (n: number) => n as Watt;
+export const wattPerSquareMetre = (n: number) => n as WattPerSquareMetre;
 export const celsius = (n: number) => n as Celsius;
+export const radian = (n: number) => n as Radian;
 export const ratio = (n: number) => n as Ratio;
 export const strain = (n: number) => n as Strain;
 export const share = (n: number) => n as Share;
@@ -52,6 +59,9 @@ export const gigapascalToPascal = (n: number) => pascal(n * 1e9);
 export const kilonewtonToNewton = (n: number) => newton(n * 1e3);
 export const newtonToKilonewton = (n: Newton): number => n / 1e3;
 export const millimetreToMetre = (n: number) => metre(n / 1e3);
+export const squareMillimetreToSquareMetre = (n: number) => squareMetre(n * 1e-6);
+export const degreeToRadian = (n: number) => radian((n * Math.PI) / 180);
+export const radianToDegree = (a: Radian): number => (a * 180) / Math.PI;
 export const metreToMillimetre = (m: Metre): number => m * 1e3;
 export const ratioToMillivoltPerVolt = (r: Ratio): number => r * 1e3;
 export const millivoltPerVoltToRatio = (n: number) => ratio(n / 1e3);
