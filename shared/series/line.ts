@@ -19,33 +19,41 @@ export interface Line {
 
 export const lineAt = (line: Line, x: number): number => line.intercept + line.slope * x;
 
+/** Mean of `of` where the pair counts; twice, so that it is right to the last digit far from zero. */
+const meanOf = (of: ArrayLike<number>, counts: Uint8Array, count: number): number => {
+  let mean = 0;
+  for (let pass = 0; pass < 2; pass++) {
+    let rest = 0;
+    for (let i = 0; i < counts.length; i++) if (counts[i] === 1) rest += (of[i] ?? NaN) - mean;
+    mean += rest / count;
+  }
+  return mean;
+};
+
 /** null with fewer than two different x. Pairs in which a figure is not finite are left out. */
 export const fitLine = (x: ArrayLike<number>, y: ArrayLike<number>): Line | null => {
-  const pairs: (readonly [x: number, y: number])[] = [];
-  for (let i = 0; i < Math.min(x.length, y.length); i++) {
-    const [xi, yi] = [x[i] ?? NaN, y[i] ?? NaN];
-    if (Number.isFinite(xi) && Number.isFinite(yi)) pairs.push([xi, yi]);
+  const counts = new Uint8Array(Math.min(x.length, y.length));
+  let count = 0;
+  for (let i = 0; i < counts.length; i++) {
+    if (Number.isFinite(x[i]) && Number.isFinite(y[i])) count += counts[i] = 1;
   }
-  const count = pairs.length;
-  // Twice, so that the mean of figures far from zero is right to the last digit.
-  const meanOf = (figure: (pair: readonly [number, number]) => number) => {
-    const rough = pairs.reduce((sum, pair) => sum + figure(pair), 0) / count;
-    return rough + pairs.reduce((sum, pair) => sum + (figure(pair) - rough), 0) / count;
-  };
-  const meanX = meanOf(([xi]) => xi);
-  const meanY = meanOf(([, yi]) => yi);
+  const meanX = meanOf(x, counts, count);
+  const meanY = meanOf(y, counts, count);
   let [sxx, sxy, syy] = [0, 0, 0];
-  for (const [xi, yi] of pairs) {
-    sxx += (xi - meanX) ** 2;
-    sxy += (xi - meanX) * (yi - meanY);
-    syy += (yi - meanY) ** 2;
+  for (let i = 0; i < counts.length; i++) {
+    if (counts[i] === 0) continue;
+    const [dx, dy] = [(x[i] ?? NaN) - meanX, (y[i] ?? NaN) - meanY];
+    sxx += dx * dx;
+    sxy += dx * dy;
+    syy += dy * dy;
   }
   if (!(sxx > 0)) return null;
   const slope = sxy / sxx;
-  const squares = pairs.reduce(
-    (sum, [xi, yi]) => sum + (yi - meanY - slope * (xi - meanX)) ** 2,
-    0,
-  );
+  let squares = 0;
+  for (let i = 0; i < counts.length; i++) {
+    if (counts[i] === 0) continue;
+    squares += ((y[i] ?? NaN) - meanY - slope * ((x[i] ?? NaN) - meanX)) ** 2;
+  }
   const residualDeviation = count > 2 ? Math.sqrt(squares / (count - 2)) : NaN;
   return {
     slope,

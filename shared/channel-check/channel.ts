@@ -1,0 +1,53 @@
+/** All that is judged of a channel before anybody loads anything, in the order of a first look. */
+import type { CalibrationRecord } from '../model/calibration.ts';
+import type { Range } from '../pipeline/convert.ts';
+import { aliveCheck, frozenCheck } from './alive.ts';
+import { driftCheck } from './drift.ts';
+import { heatingCheck, insulationCheck, type Heating, type Leak } from './electrical.ts';
+import { humCheck } from './hum.ts';
+import type { CheckLimits } from './limits.ts';
+import { MAINS } from './mains.ts';
+import { noiseCheck } from './noise.ts';
+import { signCheck, type Push } from './push.ts';
+import { seriesOf, type Watched } from './series.ts';
+import { gravest, notJudged, type Check, type ValueUnit, type Verdict } from './verdict.ts';
+import { offsetCheck, rangeCheck } from './wiring.ts';
+
+/** What is known of a channel beside its samples. */
+export interface ChannelFacts {
+  readonly unit: ValueUnit;
+  /** In force while the samples were taken. */
+  readonly record: Pick<CalibrationRecord, 'signal' | 'response'>;
+  readonly range: Range;
+  /** null: not measured. */
+  readonly leak: Leak | null;
+  /** null: excitation or grid area not stated. */
+  readonly heating: Heating | null;
+  /** null: nobody has pushed yet. */
+  readonly push: Push | null;
+}
+
+/** Every check once, in a fixed order; those that lack what they need are `not-judged`. */
+export const checkChannel = (
+  watched: Watched,
+  facts: ChannelFacts,
+  limits: CheckLimits,
+): readonly Check[] => {
+  const series = seriesOf(watched);
+  const { unit, record, range, leak, heating, push } = facts;
+  return [
+    aliveCheck(series, limits.alive),
+    frozenCheck(series, limits.frozen),
+    rangeCheck(watched, range, limits.range),
+    offsetCheck(watched, record, limits.offset),
+    noiseCheck(series, unit, limits.noise),
+    ...MAINS.map((hertz) => humCheck(series, unit, hertz, limits.mains, limits.noise)),
+    driftCheck(series, unit, limits.drift, limits.driftAfter),
+    push ? signCheck(push, unit) : notJudged('sign', unit, 'Nobody has pushed yet.'),
+    insulationCheck(leak, limits.insulation),
+    heatingCheck(heating),
+  ];
+};
+
+export const channelVerdict = (checks: readonly Check[]): Verdict =>
+  gravest(checks.map(({ verdict }) => verdict));
