@@ -1,9 +1,10 @@
 /** All that is judged of a channel before anybody loads anything, in the order of a first look. */
 import type { CalibrationRecord } from '../model/calibration.ts';
+import type { Ohm } from '../model/units.ts';
 import type { Range } from '../pipeline/convert.ts';
 import { aliveCheck, frozenCheck } from './alive.ts';
 import { driftCheck } from './drift.ts';
-import { heatingCheck, insulationCheck, type Heating, type Leak } from './electrical.ts';
+import { heatingCheck, insulationCheck, type Heating } from './electrical.ts';
 import { humCheck } from './hum.ts';
 import type { CheckLimits } from './limits.ts';
 import { MAINS } from './mains.ts';
@@ -19,8 +20,8 @@ export interface ChannelFacts {
   /** In force while the samples were taken. */
   readonly record: Pick<CalibrationRecord, 'signal' | 'response'>;
   readonly range: Range;
-  /** null: not measured. */
-  readonly leak: Leak | null;
+  /** Of the gauge to ground; null: not measured. */
+  readonly insulation: Ohm | null;
   /** null: excitation or grid area not stated. */
   readonly heating: Heating | null;
   /** null: nobody has pushed yet. */
@@ -34,7 +35,7 @@ export const checkChannel = (
   limits: CheckLimits,
 ): readonly Check[] => {
   const series = seriesOf(watched);
-  const { unit, record, range, leak, heating, push } = facts;
+  const { unit, record, range, insulation, heating, push } = facts;
   return [
     aliveCheck(series, limits.alive),
     frozenCheck(series, limits.frozen),
@@ -44,7 +45,7 @@ export const checkChannel = (
     ...MAINS.map((hertz) => humCheck(series, unit, hertz, limits.mains, limits.noise)),
     driftCheck(series, unit, limits.drift, limits.driftAfter),
     push ? signCheck(push, unit) : notJudged('sign', unit, 'Nobody has pushed yet.'),
-    insulationCheck(leak, limits.insulation),
+    insulationCheck(record.response, insulation, limits.insulation),
     heatingCheck(heating),
   ];
 };

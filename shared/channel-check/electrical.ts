@@ -1,4 +1,6 @@
-import type { Ohm, Strain } from '../model/units.ts';
+import type { Response } from '../model/calibration.ts';
+import type { Ohm } from '../model/units.ts';
+import { shuntStrain } from '../pipeline/2-ratio/shunt.ts';
 import { judge, notJudged, type Band, type Check } from './verdict.ts';
 import { inWords } from './words.ts';
 
@@ -30,25 +32,24 @@ export const heatingCheck = (heating: Heating | null): Check => {
   };
 };
 
-/** Resistance of the gauge to ground as it was measured, and the strain that such a leak feigns. */
-export interface Leak {
-  readonly resistance: Ohm;
-  /** Of the leak as a shunt across the gauge, m/m. */
-  readonly falseStrain: Strain;
-}
-
-/** Judged by the resistance; the false strain says what is at stake. */
-export const insulationCheck = (leak: Leak | null, limits: Band): Check => {
-  if (leak === null) {
+/**
+ * Resistance of the gauge to ground as it was measured, and the strain that it feigns where it
+ * leaks past the gauge. Judged by the resistance; the false strain says what is at stake.
+ */
+export const insulationCheck = (response: Response, measured: Ohm | null, limits: Band): Check => {
+  if (response.kind !== 'bridge') {
+    return notJudged('insulation', 'Ohm', 'A transducer states no gauge to leak past.', measured);
+  }
+  if (measured === null) {
     return notJudged('insulation', 'Ohm', 'No resistance to ground has been entered.');
   }
-  const { resistance, falseStrain } = leak;
+  const falseStrain = shuntStrain(response.gaugeResistance, response.gaugeFactor, measured);
   return {
     kind: 'insulation',
-    verdict: judge(resistance, limits),
-    figure: resistance,
+    verdict: judge(measured, limits),
+    figure: measured,
     unit: 'Ohm',
-    why: `${inWords(resistance, 'Ohm')} to ground: across the gauge such a leak feigns up to ${inWords(falseStrain, 'm/m')}.`,
+    why: `${inWords(measured, 'Ohm')} to ground: past the gauge such a leak feigns ${inWords(falseStrain, 'm/m')}.`,
     limits,
     also: [{ name: 'false strain of the leak', value: falseStrain, unit: 'm/m' }],
   };

@@ -49,7 +49,7 @@ const COUNTED_TO = 1000;
  * too small. At least 1. A whole number that rounding put just below itself stays whole.
  */
 export const truncatedDegrees = (degrees: number): number => {
-  const whole = Math.max(1, Math.floor(degrees * (1 + 1e-12)));
+  const whole = Math.max(1, Math.floor(degrees * (1 + 1e-9)));
   if (whole < COUNTED_TO || whole === Infinity) return whole;
   const step = 10 ** (Math.floor(Math.log10(whole)) - 2);
   return Math.floor(whole / step) * step;

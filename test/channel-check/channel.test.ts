@@ -12,7 +12,7 @@ import { offsetCheck, rangeCheck } from '../../shared/channel-check/wiring.ts';
 import { inWords } from '../../shared/channel-check/words.ts';
 import type { BridgeResponse, Signal } from '../../shared/model/calibration.ts';
 import { apply, compose, inverse } from '../../shared/model/fractional-linear.ts';
-import { ohm, seconds, strain, volt } from '../../shared/model/units.ts';
+import { ohm, seconds, volt } from '../../shared/model/units.ts';
 import { signalMap } from '../../shared/pipeline/2-ratio/signal.ts';
 import { bridgeStrain } from '../../shared/pipeline/3-strain/bridge.ts';
 import { bridge } from '../uncertainty/wiring.ts';
@@ -38,7 +38,7 @@ const facts = (response: BridgeResponse, change: Partial<ChannelFacts> = {}): Ch
   unit: 'm/m',
   record: { signal: VOLTS, response },
   range: [-0.025, 0.025],
-  leak: null,
+  insulation: null,
   heating: null,
   push: null,
   ...change,
@@ -171,17 +171,22 @@ describe('input range', () => {
   });
 });
 
-// ASTM E1237 and textbooks (value from memory): 100 MΩ in the field, look into it below 10 MΩ.
+// Verdict: ASTM E1237 and textbooks (value from memory), 100 MΩ in the field, look into it below
+// 10 MΩ. False strain at GF 2, −Rg/(GF·(Rg + R)) (computed).
 test.each([
-  [1e9, 'pass'],
-  [100e6, 'pass'],
-  [50e6, 'doubtful'],
-  [1e6, 'fail'],
-])('%d Ω to ground: %s', (resistance, verdict) => {
-  const leak = { resistance: ohm(resistance), falseStrain: strain(-60e-6) };
-  const check = insulationCheck(leak, LIMITS.insulation);
+  [120, 1e6, -59.993, 'fail'],
+  [120, 10e6, -5.99993, 'doubtful'],
+  [120, 100e6, -0.6, 'pass'],
+  [120, 1e9, -0.06, 'pass'],
+  [350, 1e6, -174.94, 'fail'],
+  [350, 10e6, -17.499, 'doubtful'],
+  [350, 100e6, -1.75, 'pass'],
+  [350, 1e9, -0.175, 'pass'],
+])('gauge of %d Ω, %d Ω to ground: %d µε feigned, %s', (gauge, resistance, feigned, verdict) => {
+  const response = bridge('quarter', { gaugeResistance: ohm(gauge) });
+  const check = insulationCheck(response, ohm(resistance), LIMITS.insulation);
   expect(check.verdict).toBe(verdict);
-  expect(check.also[0]?.value).toBe(-60e-6);
+  expect(((check.also[0]?.value ?? NaN) * 1e6) / feigned).toBeCloseTo(1, 4);
 });
 
 // Dally & Riley, Experimental Stress Analysis (value from memory), thick steel: 0.003 to
