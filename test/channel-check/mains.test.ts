@@ -46,8 +46,8 @@ describe('share of a sinusoid in noise: a²/2 of a²/2 + σ² (variance of a sin
     for (const seed of [1, 2, 3, 4, 5]) {
       const noise = normal(seed);
       const { values, dt } = sampled(200, 20, noise);
-      expect(told(values, dt, 50).share).toBeLessThan(0.03);
-      expect(told(values, dt, 60).share).toBeLessThan(0.03);
+      expect(told(values, dt, 50).share).toBeLessThan(0.012);
+      expect(told(values, dt, 60).share).toBeLessThan(0.012);
     }
   });
 
