@@ -46,7 +46,7 @@ export const checkChannel = (
     driftCheck(series, unit, limits.drift, limits.driftAfter),
     push ? signCheck(push, unit) : notJudged('sign', unit, 'Nobody has pushed yet.'),
     insulationCheck(record.response, insulation, limits.insulation),
-    heatingCheck(heating),
+    heatingCheck(record.response, heating),
   ];
 };
 

@@ -1,33 +1,47 @@
 import type { Response } from '../model/calibration.ts';
-import type { Ohm } from '../model/units.ts';
+import type { Ohm, SquareMetre, Volt } from '../model/units.ts';
 import { shuntStrain } from '../pipeline/2-ratio/shunt.ts';
+import {
+  ALLOWABLE_DENSITY,
+  dissipatedPower,
+  powerDensity,
+  type HeatSink,
+} from '../pipeline/3-strain/excitation.ts';
 import { judge, notJudged, type Band, type Check } from './verdict.ts';
 import { inWords } from './words.ts';
 
-/** Power in the grid over its area, and what its backing and the metal under it may take, W/m². */
+/** What warms a gauge's grid and what carries the warmth off. */
 export interface Heating {
-  readonly density: number;
-  /** `good`: the low end of the range allowed, `bad`: the high end. */
-  readonly allowed: Band;
+  /** Across the bridge. */
+  readonly excitation: Volt;
+  /** Length times width of the grid. */
+  readonly gridArea: SquareMetre;
+  readonly on: HeatSink;
 }
 
-export const heatingCheck = (heating: Heating | null): Check => {
+/** Power over the grid's area against the range of Dally and Riley's table for what it sits on. */
+export const heatingCheck = (response: Response, heating: Heating | null): Check => {
   const kind = 'self-heating';
+  if (response.kind !== 'bridge') {
+    return notJudged(kind, 'W/m2', 'A transducer states no grid that could warm.');
+  }
   if (heating === null) {
     return notJudged(kind, 'W/m2', 'Excitation and grid area are not both stated.');
   }
-  const { density, allowed } = heating;
-  const verdict = judge(density, allowed);
-  const [low, high] = [inWords(allowed.good, 'W/m2'), inWords(allowed.bad, 'W/m2')];
+  const power = dissipatedPower(heating.excitation, response.gaugeResistance);
+  const density = powerDensity(power, heating.gridArea);
+  const { low: good, high: bad } = ALLOWABLE_DENSITY[heating.on];
+  const verdict = judge(density, { good, bad });
+  const [low, high] = [inWords(good, 'W/m2'), inWords(bad, 'W/m2')];
   return {
     kind,
     verdict,
     figure: density,
     unit: 'W/m2',
-    why: `${inWords(density, 'W/m2')} of grid, of ${low} to ${high} that the metal under it carries off${
+    why: `${inWords(density, 'W/m2')} of grid, where ${low} to ${high} are carried off${
       verdict === 'fail' ? ': the excitation is too high, the gauge warms and drifts' : ''
     }.`,
-    limits: allowed,
+    limits: { good, bad },
     also: [],
   };
 };

@@ -12,7 +12,7 @@ import { offsetCheck, rangeCheck } from '../../shared/channel-check/wiring.ts';
 import { inWords } from '../../shared/channel-check/words.ts';
 import type { BridgeResponse, Signal } from '../../shared/model/calibration.ts';
 import { apply, compose, inverse } from '../../shared/model/fractional-linear.ts';
-import { ohm, seconds, volt } from '../../shared/model/units.ts';
+import { ohm, seconds, squareMetre, volt } from '../../shared/model/units.ts';
 import { signalMap } from '../../shared/pipeline/2-ratio/signal.ts';
 import { bridgeStrain } from '../../shared/pipeline/3-strain/bridge.ts';
 import { bridge } from '../uncertainty/wiring.ts';
@@ -189,14 +189,20 @@ test.each([
   expect(((check.also[0]?.value ?? NaN) * 1e6) / feigned).toBeCloseTo(1, 4);
 });
 
-// Dally & Riley, Experimental Stress Analysis (value from memory), thick steel: 0.003 to
-// 0.008 W/mm² of grid; 18 mm² at 5 V: 120 Ω 2.8935e-3, and 1.6e-2 beyond it.
+// Dally & Riley, Experimental Stress Analysis (value from memory): 0.003 to 0.008 W/mm² of grid on
+// thick steel, 0.0015 to 0.003 on thin; V²/4R over 18 mm² (computed).
 test.each([
-  [2893.5, 'pass'],
-  [5000, 'doubtful'],
-  [16000, 'fail'],
-])('%d W/m² of grid on thick steel: %s', (density, verdict) => {
-  expect(heatingCheck({ density, allowed: { good: 3000, bad: 8000 } }).verdict).toBe(verdict);
+  [5, 120, 'thick-steel', 2.8935e-3, 'pass'],
+  [5, 120, 'thin-steel', 2.8935e-3, 'doubtful'],
+  [5, 350, 'thin-steel', 9.9206e-4, 'pass'],
+  [10, 120, 'thick-steel', 1.1574e-2, 'fail'],
+  [5, 120, 'unfilled-plastic', 2.8935e-3, 'fail'],
+] as const)('%d V on %d Ω, %s: %d W/mm², %s', (excitation, gauge, on, density, verdict) => {
+  const response = bridge('quarter', { gaugeResistance: ohm(gauge) });
+  const heating = { excitation: volt(excitation), gridArea: squareMetre(18e-6), on };
+  const check = heatingCheck(response, heating);
+  expect((check.figure ?? NaN) / 1e6 / density).toBeCloseTo(1, 4);
+  expect(check.verdict).toBe(verdict);
 });
 
 test('bands judge upward and downward, ends belong to the better side', () => {

@@ -75,7 +75,7 @@ test('GUM H.3: correction of a thermometer against its reading less 20 °C', () 
 });
 
 describe('any line', () => {
-  const figure = fc.double({ min: -1e3, max: 1e3, noNaN: true });
+  const figure = fc.integer({ min: -1e6, max: 1e6 }).map((n) => n / 1e3);
 
   test('points on a line come back to it, and missing ones count for nothing', () => {
     fc.assert(

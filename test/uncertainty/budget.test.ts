@@ -15,7 +15,7 @@ import {
 } from '../../shared/uncertainty/budget.ts';
 import { inSteps, type Knowledge } from '../../shared/uncertainty/knowledge.ts';
 import { liveUncertainty } from '../../shared/uncertainty/live.ts';
-import { anyBridge, anyStrain, bridge } from './wiring.ts';
+import { anyBridge, anyStrain, bridge, even } from './wiring.ts';
 
 const within = (halfWidth: number): Knowledge => ({ kind: 'rectangular', halfWidth });
 
@@ -118,12 +118,12 @@ test('nothing stated: no uncertainty is claimed', () => {
 describe('the live form is the budget', () => {
   const readings = fc.record({
     kind: fc.constant('readings' as const),
-    deviation: fc.double({ min: 1e-8, max: 1e-5, noNaN: true }),
+    deviation: even(1e-8, 1e-5),
     readings: fc.integer({ min: 2, max: 200 }),
     averaged: fc.integer({ min: 1, max: 10 }),
   });
-  const share = fc.double({ min: 1e-4, max: 0.05, noNaN: true }).map(within);
-  const small = fc.double({ min: 1e-7, max: 2e-5, noNaN: true }).map(within);
+  const share = even(1e-4, 0.05).map(within);
+  const small = even(1e-7, 2e-5).map(within);
   const tolerances: fc.Arbitrary<Tolerances> = fc.record(
     {
       gaugeFactor: share.map((known) => ({ ...known, doubt: 0.3 })),
