@@ -1,6 +1,5 @@
 /** The composition root: the only file that knows every adapter. */
 import type { Limit } from '../shared/model/limit.ts';
-import { planSite } from '../shared/pipeline/index.ts';
 import { channelsOf, type Site } from '../shared/model/site.ts';
 import type { Health } from '../shared/protocol/http.ts';
 import { systemClock } from './clock.ts';
@@ -9,8 +8,11 @@ import { AlarmKeeper } from './core/alarms.ts';
 import { createBroadcast } from './core/broadcast.ts';
 import { Committer } from './core/committer.ts';
 import { createCore } from './core/core.ts';
+import { CurrentSite } from './core/current-site.ts';
 import { excitationPairs } from './core/excitation-pairs.ts';
+import { firstRevision } from './core/first-revision.ts';
 import { PresentValues } from './core/present.ts';
+import { SetUp } from './core/set-up.ts';
 import { runSteps, type Step } from './core/steps.ts';
 import { Tally } from './core/tally.ts';
 import { startFleet, type Fleet } from './demo/fleet.ts';
@@ -22,9 +24,10 @@ import { createDecode } from './ingest/decode.ts';
 import { embeddedBroker } from './ingest/embedded-broker.ts';
 import { externalBroker } from './ingest/external-broker.ts';
 import { packageFile } from './package-root.ts';
-import type { ExcitationPairs, FrameSource, RecordStore, SampleStore } from './ports.ts';
+import type { FrameSource, RecordStore, SampleStore, SiteRevision } from './ports.ts';
 import { createPush } from './push/push.ts';
-import { loadSite } from './site/load.ts';
+import { siteFormat } from './site/format.ts';
+import { loadSiteText } from './site/load.ts';
 import { openInfluxStore } from './store/influx/open.ts';
 import { openSqliteStores } from './store/sqlite/open.ts';
 
@@ -33,14 +36,14 @@ export interface App {
 }
 
 const VERSION = '0.1.0';
+const DEMO_SITE = packageFile('server', 'demo', 'site.json');
 const NODE_CHECK_EVERY = 1;
 const RECENT_ALARMS = 200;
 
-const readSiteFile = async (file: string): Promise<Site> => {
-  const read = await loadSite(file);
-  if (read.ok) return read.site;
-  const lines = read.faults.map((f) => `  ${f.path}: expected ${f.expected}, came ${f.came}`);
-  throw new Error(`${read.faults.length} faults\n${lines.join('\n')}`);
+const readSiteFile = async (file: string): Promise<string> => {
+  const read = await loadSiteText(file);
+  if (read.ok) return read.text;
+  throw new Error(`site file ${file}: ${read.faults.map(({ came }) => came).join(', ')}`);
 };
 
 interface Stores {
@@ -50,15 +53,15 @@ interface Stores {
 }
 
 /** Records are always in the data folder; samples too, unless another store is asked for. */
-const openStores = async (config: Config, pairs: ExcitationPairs): Promise<Stores> => {
-  const { samples, records } = await openSqliteStores(config.dataFolder, pairs);
+const openStores = async (config: Config): Promise<Stores> => {
+  const { samples, records } = await openSqliteStores(config.dataFolder);
   const closeEmbedded = async () => {
     await samples.close();
     await records.close();
   };
   if (config.store === null) return { samples, records, close: closeEmbedded };
   try {
-    const other = await openInfluxStore({ url: config.store, pairs });
+    const other = await openInfluxStore(config.store);
     const close = async () => {
       await other.close();
       await closeEmbedded();
@@ -70,7 +73,7 @@ const openStores = async (config: Config, pairs: ExcitationPairs): Promise<Store
   }
 };
 
-/** The limits of the site file, and over them what was changed since. */
+/** The limits of the set-up, and over them what was changed since. */
 const limitsInForce = async (site: Site, records: RecordStore) => {
   const limits = new Map<string, readonly Limit[]>(
     channelsOf(site).map(({ channel }) => [channel.id, channel.limits]),
@@ -83,16 +86,14 @@ const limitsInForce = async (site: Site, records: RecordStore) => {
 
 /** Starts everything in order, saying each step; rejects with the step that failed, and why. */
 export const startApp = async (config: Config, say: (line: string) => void): Promise<App> => {
-  const siteFile = config.siteFile ?? packageFile('server', 'demo', 'site.json');
-  const site = await readSiteFile(siteFile).catch((error: unknown) => {
-    throw new Error(`site file ${siteFile}: ${error instanceof Error ? error.message : ''}`);
-  });
-  const plan = planSite(site);
-  say(`Site: ${site.name}, ${plan.channels.length} channels${site.simulated ? ', SIMULATED' : ''}`);
-  const stores = await openStores(config, excitationPairs(plan.channels));
-  say(`Store: ${config.store ?? `SQLite in ${config.dataFolder}`}`);
+  const file = config.siteFile ?? DEMO_SITE;
+  const text = await readSiteFile(file);
+  const stores = await openStores(config);
   try {
-    return await startOn(stores, site, siteFile, config, say);
+    const { records } = stores;
+    const parts = { records, format: siteFormat, clock: systemClock, say };
+    const { site, revision } = await firstRevision(text, file, parts);
+    return await startOn(stores, site, revision, config, say);
   } catch (error) {
     await stores.close();
     throw error;
@@ -102,22 +103,26 @@ export const startApp = async (config: Config, say: (line: string) => void): Pro
 const startOn = async (
   stores: Stores,
   site: Site,
-  siteFile: string,
+  revision: SiteRevision,
   config: Config,
   say: (line: string) => void,
 ): Promise<App> => {
   const clock = systemClock;
-  const plan = planSite(site);
+  const current = new CurrentSite(site);
+  const count = `${current.channels.length} channels${site.simulated ? ', SIMULATED' : ''}`;
+  say(`Site: ${site.name}, ${count}`);
+  say(`Store: ${config.store ?? `SQLite in ${config.dataFolder}`}`);
   const { samples, records } = stores;
+  await samples.follow(excitationPairs(current.channels));
   const limits = await limitsInForce(site, records);
   const tally = new Tally(site, await samples.tally());
   const alarms = new AlarmKeeper(
-    plan.channels,
+    current.channels,
     Object.fromEntries(limits),
     await records.lastAlarmEvents(),
     await records.alarmEvents(RECENT_ALARMS),
   );
-  const present = new PresentValues(plan.channels);
+  const present = new PresentValues(current.channels);
   const broadcast = createBroadcast();
   let trouble: string | null = null;
   const committer = new Committer({
@@ -141,22 +146,40 @@ const startOn = async (
     broker: { connected: source.connected(), description: source.description() },
     store: { ok: trouble === null, description: trouble ?? (config.store ? 'InfluxDB' : 'SQLite') },
   });
+  let decode = createDecode(site);
+  const setUp = new SetUp(
+    {
+      ...{ records, samples, clock, current, limits, format: siteFormat },
+      adopt: async (next, changes) => {
+        current.replace(next);
+        for (const { channel, limits: changed } of changes) limits.set(channel, changed);
+        decode = createDecode(next);
+        tally.replan(next);
+        present.replan(current.channels);
+        const ended = alarms.replan(current.channels, Object.fromEntries(limits), clock.now());
+        broadcast.feed.revision(setUp.revision);
+        broadcast.feed.alarms(alarms.list());
+        if (ended.length > 0) await records.addAlarmEvents(ended);
+        await samples.follow(excitationPairs(current.channels));
+      },
+    },
+    revision,
+  );
   const core = createCore({
-    ...{ site, plan, samples, records, tally, alarms, present, clock, health, limits },
-    feed: broadcast.feed,
+    ...{ plan: current, samples, records, tally, alarms, present, clock, health, limits },
+    ...{ site: () => current.site, revision: () => setUp.revision, feed: broadcast.feed },
   });
   const app = createHttp({
-    ...{ core, metrics: createMetrics({ core, clock }), host, complain: say },
+    ...{ core, setUp, metrics: createMetrics({ core, clock }), host, complain: say },
     staticFolder: packageFile('dist', 'client'),
   });
   const web = createWebServer(app);
   const push = createPush({ server: web.server, core, clock, host });
   broadcast.add(push.feed);
-  const known = new Set(site.nodes.map(({ id }) => id));
   const receive = createFlow({
-    ...{ plan, tally, alarms, present, committer, feed: broadcast.feed },
-    knows: (node) => known.has(node),
-    decode: createDecode(site),
+    ...{ plan: current, tally, alarms, present, committer, feed: broadcast.feed },
+    knows: (node) => current.site.nodes.some(({ id }) => id === node),
+    decode: (delivery) => decode(delivery),
   });
   let fleet: Fleet | null = null;
   let stopWatching = () => undefined as void;
@@ -200,7 +223,7 @@ const startOn = async (
     steps.push({
       name: 'simulated nodes',
       start: async () => {
-        fleet = await startFleet({ site, siteFile, broker: source.address(), log: say });
+        fleet = await startFleet({ site, siteFile: DEMO_SITE, broker: source.address(), log: say });
         say(`Simulated nodes: ${[...fleet.processes.keys()].join(', ')}`);
       },
       stop: async () => {

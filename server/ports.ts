@@ -12,6 +12,10 @@ import type {
   History,
   LimitsRequest,
   NodeTally,
+  PreviewLine,
+  RevisionsAnswer,
+  SetUpAnswer,
+  SetUpRequest,
 } from '../shared/protocol/http.ts';
 import type { LiveValue, Snapshot } from '../shared/protocol/socket.ts';
 
@@ -134,6 +138,8 @@ export interface SampleQuery {
 export interface SampleStore {
   /** Durable when it resolves: all of the frames, or on rejection none counted. Answers in order. */
   commit(frames: readonly StoredFrame[]): Promise<readonly Stored[]>;
+  /** Keeps series of these pairs, and of no others, from the next frame on. */
+  follow(pairs: ExcitationPairs): Promise<void>;
   has(node: string, boot: string, seq: number): Promise<boolean>;
   tally(): Promise<readonly BootTally[]>;
   envelope(query: EnvelopeQuery): Promise<Envelope>;
@@ -191,7 +197,7 @@ export type SiteReading =
 export interface SiteFormat {
   /** A checked site, or everything that is wrong with the text at once. */
   read(text: string): SiteReading;
-  /** With these limits in place of a channel's own, by channel id. */
+  /** With these limits, by channel id, in each channel that states others. */
   withLimits(text: string, limits: ReadonlyMap<string, readonly Limit[]>): string;
   /** With `recorded_at` on each record that has none and that `before` does not have. */
   stamped(text: string, before: string, at: EpochSeconds): string;
@@ -203,6 +209,31 @@ export interface Clock {
   now(): EpochSeconds;
   /** Calls back after `seconds`; the returned function cancels. */
   after(seconds: number, call: () => void): () => void;
+}
+
+export type SetUpOutcome =
+  | { readonly kind: 'changed'; readonly revision: number }
+  | { readonly kind: 'refused'; readonly faults: readonly Fault[] }
+  /** Somebody else changed it first: what stands now, and whose it is. */
+  | {
+      readonly kind: 'conflict';
+      readonly revision: number;
+      readonly at: EpochSeconds;
+      readonly author: string;
+      readonly reason: string;
+    };
+
+/** The set-up of the site, read and changed while everything runs. */
+export interface SetUpDesk {
+  answer(): SetUpAnswer;
+  revisions(): Promise<RevisionsAnswer>;
+  /** What a change would do to the past, line by line; faults instead, if it may not be. */
+  preview(
+    document: unknown,
+  ):
+    | { readonly ok: true; readonly lines: AsyncGenerator<PreviewLine> }
+    | { readonly ok: false; readonly faults: readonly Fault[] };
+  change(request: SetUpRequest): Promise<SetUpOutcome>;
 }
 
 /** What screens and scripts may ask of the running core, and what they may change. */
@@ -232,4 +263,6 @@ export interface Feed {
   nodes(nodes: readonly NodeTally[]): void;
   limits(channel: string, limits: readonly Limit[]): void;
   health(health: Health): void;
+  /** The set-up is another one from now on. */
+  revision(revision: number): void;
 }

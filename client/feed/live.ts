@@ -18,6 +18,8 @@ export interface LiveHandlers {
   nodes(nodes: readonly NodeTally[]): void;
   limits(channel: string, limits: readonly Limit[]): void;
   health(health: Health): void;
+  /** The set-up is another one than at first: what is known of the site no longer holds. */
+  outdated(): void;
 }
 
 /** Connects, and connects again for as long as it is open; the returned function closes. */
@@ -30,7 +32,15 @@ export const openLive = (handlers: LiveHandlers): (() => void) => {
     reconnectionDelayMax: 3000,
   });
   socket.on('disconnect', () => handlers.disconnected());
-  socket.on('snapshot', (snapshot) => handlers.snapshot(snapshot));
+  let first: number | null = null;
+  const standsAt = (revision: number): boolean => (first ??= revision) === revision;
+  socket.on('snapshot', (snapshot) => {
+    if (standsAt(snapshot.revision)) handlers.snapshot(snapshot);
+    else handlers.outdated();
+  });
+  socket.on('revision', (revision) => {
+    if (!standsAt(revision)) handlers.outdated();
+  });
   socket.on('live', (packed) => handlers.live(unpackLive(packed)));
   socket.on('alarms', (list) => handlers.alarms(list));
   socket.on('nodes', (nodes) => handlers.nodes(nodes));

@@ -121,12 +121,16 @@ export class LiveState {
         this.lostAt ??= this.serverNow();
         this.connection = 'lost';
       },
-      snapshot: (snapshot) => this.#restate(snapshot),
+      snapshot: (snapshot) => {
+        if (this.#knows(snapshot.values)) this.#restate(snapshot);
+        else location.reload();
+      },
       live: (values) => this.#accept(values),
       alarms: (list) => (this.alarms = list),
       nodes: (nodes) => (this.nodes = nodes),
       limits: (channel, limits) => (this.limits = { ...this.limits, [channel]: limits }),
       health: (health) => (this.health = health),
+      outdated: () => location.reload(),
     });
     const ticking = setInterval(() => {
       this.now = this.serverNow();
@@ -145,6 +149,14 @@ export class LiveState {
       this.#taps.tell(value);
     }
     this.#draw();
+  }
+
+  /** Live values name channels by their place: with other channels than these all would be wrong. */
+  #knows(values: Snapshot['values']): boolean {
+    const { facts } = this;
+    return (
+      values.length === facts.length && values.every((v, i) => v.channel === facts[i]?.channel.id)
+    );
   }
 
   #restate({ now, health, values, alarms, nodes, limits }: Snapshot): void {

@@ -31,8 +31,8 @@ const eventOf = (id: string, { threshold }: Watch, crossing: Crossing): AlarmEve
 
 /** The alarm stage with its memory: every sample of every channel against the limits in force. */
 export class AlarmKeeper {
-  readonly #channels: readonly ChannelPlan[];
-  readonly #watches: Watch[][];
+  #channels: readonly ChannelPlan[];
+  #watches: Watch[][];
   readonly #active = new Map<string, AlarmEvent>();
   #recent: AlarmEvent[];
 
@@ -62,6 +62,20 @@ export class AlarmKeeper {
     });
     for (const event of ended) this.#note(event);
     this.#watches[plan.index] = this.#watch(plan, limits);
+    return ended;
+  }
+
+  /** Goes on with another set-up; gives what ends with channels and limits that are gone. */
+  replan(
+    channels: readonly ChannelPlan[],
+    limits: Readonly<Record<string, readonly Limit[]>>,
+    at: EpochSeconds,
+  ): AlarmEvent[] {
+    const ended = this.#channels.flatMap((plan) =>
+      this.setLimits(plan, limits[plan.channel.id] ?? [], at),
+    );
+    this.#channels = channels;
+    this.#watches = channels.map((plan) => this.#watch(plan, limits[plan.channel.id] ?? []));
     return ended;
   }
 

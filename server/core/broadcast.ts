@@ -11,6 +11,7 @@ export const createBroadcast = (): { feed: Feed; add: (feed: Feed) => void } => 
       nodes: (nodes) => feeds.forEach((feed) => feed.nodes(nodes)),
       limits: (channel, limits) => feeds.forEach((feed) => feed.limits(channel, limits)),
       health: (health) => feeds.forEach((feed) => feed.health(health)),
+      revision: (revision) => feeds.forEach((feed) => feed.revision(revision)),
     },
   };
 };

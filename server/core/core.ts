@@ -9,9 +9,12 @@ import type { AlarmKeeper } from './alarms.ts';
 import { channelEnvelope } from './history.ts';
 import type { PresentValues } from './present.ts';
 import type { Tally } from './tally.ts';
+import { textFaults } from './text-faults.ts';
 
 export interface CoreParts {
-  readonly site: Site;
+  readonly site: () => Site;
+  /** Of the set-up. */
+  readonly revision: () => number;
   readonly plan: SitePlan;
   readonly samples: SampleStore;
   readonly records: RecordStore;
@@ -24,13 +27,7 @@ export interface CoreParts {
   readonly limits: Map<string, readonly Limit[]>;
 }
 
-const LONGEST_TEXT = 500;
 const MOST_POINTS = 20_000;
-
-const textFault = (path: string, text: string): Fault[] =>
-  text.trim() !== '' && text.length <= LONGEST_TEXT
-    ? []
-    : [{ path, expected: `1 to ${LONGEST_TEXT} characters`, came: `${text.length}` }];
 
 /** Answers what screens and scripts ask, and takes what they change. */
 export const createCore = (parts: CoreParts): Core => {
@@ -44,8 +41,8 @@ export const createCore = (parts: CoreParts): Core => {
     if (!channel) return [{ path: 'channel', expected: 'a channel of the site', came: id }];
     const faults = [
       ...limitFaults(request.limits, channel.context),
-      ...textFault('/author', request.author),
-      ...textFault('/reason', request.reason),
+      ...textFaults('/author', request.author),
+      ...textFaults('/reason', request.reason),
     ];
     if (faults.length > 0) return faults;
     const at = clock.now();
@@ -59,7 +56,7 @@ export const createCore = (parts: CoreParts): Core => {
   };
 
   const core: Core = {
-    site: () => site,
+    site,
     health: parts.health,
     values,
     alarms: () => alarms.list(),
@@ -68,6 +65,7 @@ export const createCore = (parts: CoreParts): Core => {
     setLimits,
     snapshot: () => ({
       now: clock.now(),
+      revision: parts.revision(),
       health: parts.health(),
       values: values(),
       alarms: alarms.list(),
@@ -82,7 +80,7 @@ export const createCore = (parts: CoreParts): Core => {
         return refuse('points', 'points', `a whole number, 1 to ${MOST_POINTS}`, String(points));
       }
       const envelope = await channelEnvelope(samples, channel, from, to, points);
-      return accept({ channel: id, simulated: site.simulated, from, to, ...envelope });
+      return accept({ channel: id, simulated: site().simulated, from, to, ...envelope });
     },
   };
   return core;

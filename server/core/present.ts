@@ -10,14 +10,32 @@ interface Present {
   quality: Quality | 'none';
 }
 
+const NOTHING: Present = { value: null, at: null, quality: 'none' };
+
 /** The last word of every channel. */
 export class PresentValues {
-  readonly #present: Present[];
-  readonly #channels: readonly ChannelPlan[];
+  #present: Present[];
+  #channels: readonly ChannelPlan[];
 
   constructor(channels: readonly ChannelPlan[]) {
     this.#channels = channels;
-    this.#present = channels.map(() => ({ value: null, at: null, quality: 'none' }));
+    this.#present = channels.map(() => ({ ...NOTHING }));
+  }
+
+  /** Goes on with another set-up; what was derived otherwise than now is forgotten. */
+  replan(channels: readonly ChannelPlan[]): void {
+    const before = new Map(
+      this.#channels.map(({ channel, conversions }, i) => [
+        channel.id,
+        { derivation: JSON.stringify(conversions), present: this.#present[i] },
+      ]),
+    );
+    this.#present = channels.map(({ channel, conversions }) => {
+      const was = before.get(channel.id);
+      const same = was?.derivation === JSON.stringify(conversions);
+      return (same && was.present) || { ...NOTHING };
+    });
+    this.#channels = channels;
   }
 
   /** Takes the blocks in as the newest, and gives what a display shows of them. */
@@ -39,7 +57,7 @@ export class PresentValues {
 
   values(isStale: (node: string) => boolean): CurrentValue[] {
     return this.#channels.map(({ channel }, i) => {
-      const { value, at, quality } = this.#present[i] ?? { value: null, at: null, quality: 'none' };
+      const { value, at, quality } = this.#present[i] ?? NOTHING;
       const stale = quality !== 'none' && isStale(channel.node);
       return { channel: channel.id, value, at, quality: stale ? 'stale' : quality };
     });

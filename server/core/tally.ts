@@ -71,6 +71,21 @@ export class Tally {
     }
   }
 
+  /** Goes on with another set-up: nodes may be known now that were not, and the reverse. */
+  replan(site: Site): void {
+    const nodes = new Map(site.nodes.map((node) => [node.id, node]));
+    for (const [name, entry] of this.#entries) {
+      const node = nodes.get(name);
+      const assigned = node ? inputsOfChannels(site, name) : new Set<string>();
+      const [known, staleAfter] = [node !== undefined, node?.staleAfter ?? Infinity];
+      entry.unassigned.clear();
+      this.#entries.set(name, { ...entry, known, staleAfter, assigned });
+    }
+    for (const { id, staleAfter } of site.nodes) {
+      if (!this.#entries.has(id)) this.#add(id, true, staleAfter, inputsOfChannels(site, id));
+    }
+  }
+
   /** Notes that a frame came, and says where it stands among those that came before. */
   place(frame: Frame, arrived: EpochSeconds): Placement {
     const entry = this.#entry(frame.node);

@@ -7,17 +7,18 @@ import type {
   TallyAnswer,
 } from '../../shared/protocol/http.ts';
 import { parseHistoryQuery, parseLimitsRequest } from '../../shared/protocol/parse.ts';
-import type { Core } from '../ports.ts';
+import type { Core, SetUpDesk } from '../ports.ts';
 import { channelReports } from './channel-report.ts';
 import { jsonOnly } from './guard.ts';
 import { historyCsv, historyFileName } from './history-csv.ts';
 import { openApi } from './openapi/document.ts';
 import { methodNotAllowed, notFound, sendProblem } from './problem.ts';
+import { createSetUpApi } from './set-up-api.ts';
 
 const LARGEST_BODY = '64kb';
 
 /** The REST API, all that is below /api. */
-export const createApi = (core: Core): Router => {
+export const createApi = (core: Core, setUp: SetUpDesk): Router => {
   const router = Router();
   const { simulated } = core.site();
   const readOnly = methodNotAllowed('GET', 'HEAD');
@@ -106,6 +107,7 @@ export const createApi = (core: Core): Router => {
     })
     .all(readOnly);
 
+  router.use('/set-up', createSetUpApi(setUp));
   router.use(notFound);
   return router;
 };

@@ -59,6 +59,10 @@ export class Outlet implements Feed {
     this.#put('health', () => this.#wire.health(...health));
   }
 
+  revision(...revision: Parameters<Feed['revision']>): void {
+    this.#put('revision', () => this.#wire.revision(...revision));
+  }
+
   /** To be called when the network has taken what was handed over. */
   drained(): void {
     this.#pump();

@@ -56,6 +56,7 @@ const wireTo = (socket: Browser): Wire => ({
   nodes: (nodes) => void socket.emit('nodes', nodes),
   limits: (channel, limits) => void socket.emit('limits', channel, limits),
   health: (health) => void socket.emit('health', health),
+  revision: (revision) => void socket.emit('revision', revision),
 });
 
 /** The live connection to browsers, over WebSocket on the server of the page. */
@@ -104,6 +105,7 @@ export const createPush = ({ server, core, clock, host, pace = DISPLAY_PACE }: P
       nodes: (nodes) => toAll((outlet) => outlet.nodes(nodes)),
       limits: (channel, limits) => toAll((outlet) => outlet.limits(channel, limits)),
       health: (health) => toAll((outlet) => outlet.health(health)),
+      revision: (revision) => toAll((outlet) => outlet.revision(revision)),
     },
     browsers: () => outlets.size,
     close: async () => {

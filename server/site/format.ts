@@ -40,13 +40,17 @@ export const siteFormat: SiteFormat = {
 
   withLimits: (text, limits) => {
     const read = readSiteText(text);
-    const measurands = new Map(
-      read.ok ? channelsOf(read.site).map(({ channel }) => [channel.id, channel.measurand]) : [],
-    );
+    const channels = read.ok ? channelsOf(read.site).map(({ channel }) => channel) : [];
+    const others = channels.filter(({ id, limits: stated }) => {
+      const own = limits.get(id);
+      return own !== undefined && JSON.stringify(own) !== JSON.stringify(stated);
+    });
     return changed(text, (json) => {
-      for (const [id, channel] of channelObjects(json)) {
-        const [own, measurand] = [limits.get(id), measurands.get(id)];
-        if (own && measurand) channel.limits = own.map((limit) => writeLimit(limit, measurand));
+      const objects = channelObjects(json);
+      for (const { id, measurand } of others) {
+        const object = objects.get(id);
+        const own = limits.get(id) ?? [];
+        if (object) object.limits = own.map((limit) => writeLimit(limit, measurand));
       }
     });
   },

@@ -121,6 +121,52 @@ export interface LimitsRequest {
   readonly reason: string;
 }
 
+/** The site file with the limits in force, and who made it what it is. */
+export interface SetUpAnswer {
+  readonly simulated: boolean;
+  readonly revision: number;
+  readonly at: number;
+  readonly author: string;
+  readonly reason: string;
+  readonly origin: 'file' | 'screen';
+  /** As docs/site.schema.json describes it. */
+  readonly document: unknown;
+}
+
+export interface SetUpRequest {
+  readonly document: unknown;
+  /** The revision that it was made from. */
+  readonly basedOn: number;
+  readonly author: string;
+  readonly reason: string;
+}
+
+export interface RevisionsAnswer {
+  readonly simulated: boolean;
+  /** Newest first. */
+  readonly revisions: readonly Omit<SetUpAnswer, 'simulated' | 'document'>[];
+}
+
+/** What a change of the set-up would make of one channel's past, SI. */
+export interface ChannelChange {
+  readonly channel: string;
+  readonly from: number;
+  /** Not included. */
+  readonly to: number;
+  /** How many points were compared. */
+  readonly points: number;
+  /** Extremes over the window; null: nothing believed in it. */
+  readonly before: { readonly min: number; readonly max: number } | null;
+  readonly after: { readonly min: number; readonly max: number } | null;
+  /** Of the means of points. */
+  readonly largest: { readonly at: number; readonly before: number; readonly after: number } | null;
+}
+
+/** A line of the preview (application/x-ndjson); the last one is the result. */
+export type PreviewLine =
+  | { readonly kind: 'progress'; readonly done: number; readonly of: number }
+  | { readonly kind: 'result'; readonly channels: readonly ChannelChange[] };
+
 export type { Fault };
 
 /** Body of every answer that is not 2xx. */

@@ -95,14 +95,14 @@ export const parseHistoryQuery = (
     : { ok: false, faults };
 };
 
-type Report = (path: string, expected: string, came: unknown) => void;
+export type Report = (path: string, expected: string, came: unknown) => void;
 
 const LIMIT_FIELDS = ['level', 'basis', 'value', 'deadband', 'onDelay'];
 const REQUEST_FIELDS = ['limits', 'author', 'reason'];
 /** Each level once. */
 const MOST_LIMITS = LIMIT_LEVELS.length;
 
-const reportStrangers = (
+export const reportStrangers = (
   map: Readonly<Record<string, unknown>>,
   fields: readonly string[],
   at: string,

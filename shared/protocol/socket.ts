@@ -6,6 +6,8 @@ import { QUALITIES, type Quality } from '../model/block.ts';
 /** Everything a browser needs to stand where the server stands. Sent on every connection. */
 export interface Snapshot {
   readonly now: number;
+  /** Of the set-up. */
+  readonly revision: number;
   readonly health: Health;
   readonly values: readonly CurrentValue[];
   readonly alarms: AlarmList;
@@ -22,6 +24,8 @@ export interface ServerToClient {
   nodes(nodes: readonly NodeTally[]): void;
   limits(channel: string, limits: readonly Limit[]): void;
   health(health: Health): void;
+  /** The set-up is another one: the site has to be read again. */
+  revision(revision: number): void;
 }
 
 /** Browsers read over HTTP and change over HTTP: nothing is sent up the socket. */

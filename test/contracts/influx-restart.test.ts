@@ -12,7 +12,7 @@ beforeAll(async () => {
 afterAll(() => influxd.close());
 
 const open = (place: string) =>
-  openInfluxStore({ url: `influx+http://${influxd.host}/${place}`, pairs: PAIRS });
+  openInfluxStore(`influx+http://${influxd.host}/${place}`, PAIRS);
 
 const steady = (seq: number, at: number, value: number) =>
   frameOf({
@@ -56,9 +56,9 @@ test('a database that dies refuses the commit; the same frames go in once when i
 
 test('an address without a database, and one where nobody listens, are refused', async () => {
   await expect(
-    openInfluxStore({ url: `influx+http://${influxd.host}`, pairs: {} }),
+    openInfluxStore(`influx+http://${influxd.host}`, {}),
   ).rejects.toThrow(/expected influx\+http/);
   await expect(
-    openInfluxStore({ url: 'influx+http://127.0.0.1:1/d', pairs: {} }),
+    openInfluxStore('influx+http://127.0.0.1:1/d', {}),
   ).rejects.toThrow();
 });

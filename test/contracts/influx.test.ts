@@ -14,7 +14,7 @@ afterAll(() => influxd.close());
 let places = 0;
 const newPlace = () => `place_${places++}`;
 const open = (place: string, pairs: ExcitationPairs) =>
-  openInfluxStore({ url: `influx+http://${influxd.host}/${place}`, pairs });
+  openInfluxStore(`influx+http://${influxd.host}/${place}`, pairs);
 
 describeSampleStore('InfluxDB 1.x', {
   newPlace: async () => newPlace(),

@@ -1,4 +1,4 @@
-import { expect, test } from 'vitest';
+import { expect, onTestFinished, test } from 'vitest';
 import type { ExcitationPairs, SampleStore } from '../../server/ports.ts';
 import { epochSeconds, seconds } from '../../shared/model/units.ts';
 import { frameOf } from './sample-store.ts';
@@ -48,6 +48,22 @@ export const testNames = (
         expect(Math.max(...max)).toBe((6 + seq) / 2);
       }
       await store.close();
+    }
+  });
+
+  test(`${name}: pairs followed while it is open, dropped and followed again, miss nothing`, async () => {
+    const store = await open(newPlace(), {});
+    onTestFinished(() => store.close());
+    for (const [seq, pairs] of [{}, PAIR, PAIR, {}, PAIR].entries()) {
+      await store.follow(pairs);
+      await store.commit([tenSeconds(seq)]);
+      const series = { node: 'n1', input: 'a', over: 'ex' };
+      for (const points of [1, 5]) {
+        const window = { from: epochSeconds(T0), to: epochSeconds(T0 + 50), points };
+        const { count, max } = await store.envelope({ series, ...window });
+        expect(count.reduce((sum, n) => sum + n, 0)).toBe(20 * (seq + 1));
+        expect(Math.max(...max)).toBe((6 + seq) / 2);
+      }
     }
   });
 };

@@ -1,5 +1,5 @@
 /** The core's port as a plain object over a small site that has one of every kind of channel. */
-import type { Core } from '../../server/ports.ts';
+import type { Core, SetUpDesk } from '../../server/ports.ts';
 import type { CalibrationRecord, Leads, Signal } from '../../shared/model/calibration.ts';
 import { accept } from '../../shared/model/frame.ts';
 import type { AlarmEvent, Limit } from '../../shared/model/limit.ts';
@@ -203,6 +203,7 @@ export const plainCore = (over: Partial<Core> = {}): Core => {
     limits: () => limits,
     setLimits: async () => [],
     snapshot: () => ({
+      revision: 1,
       now: START,
       health: HEALTH,
       values: VALUES,
@@ -218,6 +219,24 @@ export const plainCore = (over: Partial<Core> = {}): Core => {
         mean: [1.2e-6, null, 0],
         max: [1.3e-6, null, 0.1 + 0.2],
       }),
+    ...over,
+  };
+};
+
+/** A desk that takes every change; `over`: what a test wants otherwise. */
+export const plainDesk = (over: Partial<SetUpDesk> = {}): SetUpDesk => {
+  const head = { revision: 1, at: START, author: 'A', reason: 'R', origin: 'file' } as const;
+  return {
+    answer: () => ({ simulated: true, ...head, document: { format: 1 } }),
+    revisions: async () => ({ simulated: true, revisions: [head] }),
+    preview: () => ({
+      ok: true,
+      lines: (async function* () {
+        yield { kind: 'progress', done: 1, of: 1 } as const;
+        yield { kind: 'result', channels: [] } as const;
+      })(),
+    }),
+    change: async () => ({ kind: 'changed', revision: 2 }),
     ...over,
   };
 };

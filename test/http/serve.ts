@@ -7,9 +7,9 @@ import { text } from 'node:stream/consumers';
 import { onTestFinished } from 'vitest';
 import { createHttp } from '../../server/http/http.ts';
 import { createMetrics } from '../../server/http/metrics.ts';
-import type { Core } from '../../server/ports.ts';
+import type { Core, SetUpDesk } from '../../server/ports.ts';
 import { fakeClock } from '../helpers/fakes.ts';
-import { plainCore, START } from '../helpers/core.ts';
+import { plainCore, plainDesk, START } from '../helpers/core.ts';
 import { temporaryFolder } from '../helpers/process.ts';
 
 export interface Answer {
@@ -35,13 +35,18 @@ export interface Served {
 }
 
 /** The real HTTP side on a free port, over a plain core and an empty page folder. */
-export const serve = async (over: Partial<Core> = {}, host = '127.0.0.1'): Promise<Served> => {
+export const serve = async (
+  over: Partial<Core> = {},
+  host = '127.0.0.1',
+  desk: Partial<SetUpDesk> = {},
+): Promise<Served> => {
   const core = plainCore(over);
   const folder = join(temporaryFolder(), 'page');
   mkdirSync(folder);
   const complaints: string[] = [];
   const app = createHttp({
     core,
+    setUp: plainDesk(desk),
     metrics: createMetrics({ core, clock: fakeClock(START + 61) }),
     staticFolder: folder,
     host,

@@ -29,6 +29,7 @@ const scene = (pace: Pace = DISPLAY_PACE) => {
     nodes: (nodes) => note(`nodes ${nodes.length}`),
     limits: (channel, limits) => note(`limits ${channel} ${limits.length}`),
     health: ({ version }) => note(`health ${version}`),
+    revision: (revision) => note(`revision ${revision}`),
   };
   const outlet = new Outlet(wire, clock, pace);
   const drain = () => {

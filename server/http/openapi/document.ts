@@ -1,39 +1,20 @@
 import { DEFAULT_POINTS, HISTORY_FORMATS, MOST_POINTS } from '../../../shared/protocol/parse.ts';
 import { EXAMPLES } from './examples.ts';
 import { LIVE_SCHEMAS } from './live-schemas.ts';
+import {
+  content,
+  FAILED,
+  json,
+  NO_CHANNEL,
+  OTHER_HOST,
+  problem,
+  read,
+  SIMULATED_HEADER,
+} from './operation.ts';
 import { ref, type Schema } from './schema.ts';
+import { SET_UP_PATHS } from './set-up-paths.ts';
+import { SET_UP_SCHEMAS } from './set-up-schemas.ts';
 import { SITE_SCHEMAS } from './site-schemas.ts';
-
-const SIMULATED_HEADER = { $ref: '#/components/headers/Simulated' };
-
-const content = (schema: Schema, example?: unknown) => ({
-  'application/json': { schema, ...(example === undefined ? {} : { example }) },
-});
-
-const json = (description: string, name: string, example?: unknown) => ({
-  description,
-  headers: { 'X-Simulated': SIMULATED_HEADER },
-  content: content(ref(name), example),
-});
-
-const problem = (description: string, example?: unknown) => json(description, 'Problem', example);
-const FAILED = { $ref: '#/components/responses/Failed' };
-const NO_CHANNEL = { $ref: '#/components/responses/NoChannel' };
-const OTHER_HOST = { $ref: '#/components/responses/OtherHost' };
-
-const read = (operationId: string, summary: string, ok: object, more: object = {}) => ({
-  get: {
-    operationId,
-    summary,
-    ...more,
-    responses: {
-      200: ok,
-      ...('responses' in more && typeof more.responses === 'object' ? more.responses : {}),
-      421: OTHER_HOST,
-      500: FAILED,
-    },
-  },
-});
 
 const queryParameter = (name: string, required: boolean, schema: Schema, description: string) => ({
   name,
@@ -168,11 +149,12 @@ export const openApi = (version: string) => ({
     '/api/history': historyPath,
     '/api/alarms': all('alarms', 'Alarms now and before', 'AlarmsAnswer', EXAMPLES.alarms),
     '/api/tally': all('tally', 'Frames of every node', 'TallyAnswer', EXAMPLES.tally),
+    ...SET_UP_PATHS,
     '/api/openapi.json': all('openApi', 'This document', 'OpenApi'),
     '/metrics': metricsPath,
   },
   components: {
-    schemas: { ...LIVE_SCHEMAS, ...SITE_SCHEMAS },
+    schemas: { ...LIVE_SCHEMAS, ...SET_UP_SCHEMAS, ...SITE_SCHEMAS },
     headers: {
       Simulated: {
         description: 'yes: the nodes are simulated, and so is every figure',

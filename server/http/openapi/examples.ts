@@ -133,7 +133,18 @@ const CSV = [
   '',
 ].join('\r\n');
 
+const setUpRequest = {
+  document: { format: 1, id: 'saltmarsh-boatyard', simulated: true },
+  basedOn: 3,
+  author: 'Test engineer',
+  reason: 'Gauge factor off the packet was typed wrongly',
+};
+
+const setUpPreview = { document: setUpRequest.document };
+
 export const EXAMPLES = {
+  setUpRequest,
+  setUpPreview,
   health,
   channel,
   channels: { simulated: true, channels: [channel.channel] },

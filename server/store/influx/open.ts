@@ -37,7 +37,7 @@ const keyOf = (node: string, boot: string, seq: number): string => `${node} ${bo
  */
 class InfluxStore implements SampleStore {
   readonly #database: Database;
-  readonly #pairs: ExcitationPairs;
+  #pairs: ExcitationPairs;
   readonly #lanes: Lanes;
   #boots: Boots;
   #last: Promise<unknown> = Promise.resolve();
@@ -53,6 +53,10 @@ class InfluxStore implements SampleStore {
     const commit = this.#last.then(() => this.#commit(frames));
     this.#last = commit.catch(() => this.#lanes.forget());
     return commit;
+  }
+
+  async follow(pairs: ExcitationPairs): Promise<void> {
+    this.#pairs = pairs;
   }
 
   async has(node: string, boot: string, seq: number): Promise<boolean> {
@@ -166,16 +170,14 @@ class InfluxStore implements SampleStore {
   }
 }
 
-export interface InfluxOptions {
-  readonly url: string;
-  readonly pairs: ExcitationPairs;
-}
-
 /**
  * Opens `influx+http://host:port/database` (https too), makes the database if it
- * is not there. `pairs` as for the embedded store. Rejects if it cannot be reached.
+ * is not there. Rejects if it cannot be reached.
  */
-export const openInfluxStore = async ({ url, pairs }: InfluxOptions): Promise<SampleStore> => {
+export const openInfluxStore = async (
+  url: string,
+  pairs: ExcitationPairs = {},
+): Promise<SampleStore> => {
   const database = new Database(url);
   await database.create();
   return new InfluxStore(database, pairs, await readBoots(database));

@@ -94,7 +94,7 @@ export interface SqliteStores {
  */
 export const openSqliteStores = async (
   folder: string,
-  pairs: ExcitationPairs,
+  pairs: ExcitationPairs | null = null,
 ): Promise<SqliteStores> => {
   const writer = new Thread({ role: 'writer', folder, pairs });
   await writer.ready;
@@ -119,6 +119,7 @@ export const openSqliteStores = async (
         packed.map(({ body }) => body),
       );
     },
+    follow: (next) => writer.call('samples', 'follow', [next]),
     has: (...args) => writer.call('samples', 'has', args),
     tally: () => writer.call('samples', 'tally', []),
     envelope: async (query) => {

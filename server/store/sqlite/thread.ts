@@ -8,7 +8,8 @@ import { SqliteWriter } from './writer.ts';
 export interface ThreadData {
   readonly role: 'writer' | 'reader';
   readonly folder: string;
-  readonly pairs: ExcitationPairs;
+  /** null: not said yet; see SampleStore.follow. */
+  readonly pairs: ExcitationPairs | null;
 }
 
 export interface Call {

@@ -52,7 +52,8 @@ const FLUSH_SECONDS = 1;
 /** The one who writes samples. Synchronous: lives on a thread of its own. */
 export class SqliteWriter {
   readonly #database: Database;
-  readonly #pairs: ExcitationPairs;
+  /** null: not said yet. */
+  #pairs: ExcitationPairs | null;
   readonly #levels: Levels;
   readonly #statements;
   readonly #nodes = new Map<string, { id: number; longest: number }>();
@@ -61,7 +62,7 @@ export class SqliteWriter {
   #sinceFlush = 0;
   #flushedAt = -Infinity;
 
-  constructor(folder: string, pairs: ExcitationPairs) {
+  constructor(folder: string, pairs: ExcitationPairs | null) {
     this.#database = openFile(folder, 'samples');
     this.#pairs = pairs;
     this.#levels = new Levels(this.#database);
@@ -99,6 +100,13 @@ export class SqliteWriter {
       this.#forget();
       throw error;
     }
+  }
+
+  follow(pairs: ExcitationPairs): void {
+    this.flush();
+    this.#pairs = pairs;
+    this.#plans.clear();
+    this.#retire();
   }
 
   /** Writes the levels up to the last frame, so that a reader finds everything in them. */
@@ -220,12 +228,17 @@ export class SqliteWriter {
       }
       this.#levels.took(row.id);
     }
-    retirePairs(this.#database, (node) => this.#pairsOf(node));
+    this.#retire();
+  }
+
+  #retire(): void {
+    if (this.#pairs) retirePairs(this.#database, (node) => this.#pairsOf(node));
   }
 
   /** A node may bear the name of something that every object inherits. */
   #pairsOf(node: string): readonly SeriesInputs[] {
-    return Object.hasOwn(this.#pairs, node) ? (this.#pairs[node] ?? []) : [];
+    const pairs = this.#pairs ?? {};
+    return Object.hasOwn(pairs, node) ? (pairs[node] ?? []) : [];
   }
 
   #node(name: string): { id: number; longest: number } {

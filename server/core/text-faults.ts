@@ -1,0 +1,9 @@
+import type { Fault } from '../../shared/model/fault.ts';
+
+const LONGEST_TEXT = 500;
+
+/** Who and why have to be said, in not too many words. */
+export const textFaults = (path: string, text: string): Fault[] =>
+  text.trim() !== '' && text.length <= LONGEST_TEXT
+    ? []
+    : [{ path, expected: `1 to ${LONGEST_TEXT} characters`, came: `${text.length}` }];
