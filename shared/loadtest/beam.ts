@@ -1,17 +1,16 @@
-import type { Section } from '../model/site.ts';
 import {
   metre,
   newton,
   newtonMetre,
   pascal,
-  strain,
   type Metre,
   type Newton,
   type NewtonMetre,
   type Pascal,
   type QuarticMetre,
-  type Strain,
 } from '../model/units.ts';
+
+export { fibreStrain, type SectionForces } from '../pipeline/4-stress/fibre.ts';
 
 /** Simply supported at 0 and `span`. */
 export interface Beam {
@@ -50,25 +49,6 @@ export const deflection = (beam: Beam, { force, at }: PointLoad, x: Metre): Metr
       (6 * span * youngsModulus * inertia),
   );
 };
-
-/** Axial force, tension positive, and moments about the strong and the weak axis. */
-export interface SectionForces {
-  readonly axial: Newton;
-  readonly aboutY: NewtonMetre;
-  readonly aboutZ: NewtonMetre;
-}
-
-/**
- * ε = N/(EA) + My·z/(EIy) − Mz·y/(EIz) at the point (y, z) of the section from its centroid;
- * axes of EN 1993-1-1 §1.7, plane sections stay plane.
- */
-export const fibreStrain = (
-  { axial, aboutY, aboutZ }: SectionForces,
-  { y, z }: { readonly y: Metre; readonly z: Metre },
-  { area, inertiaY, inertiaZ }: Section,
-  youngsModulus: Pascal,
-): Strain =>
-  strain((axial / area + (aboutY * z) / inertiaY - (aboutZ * y) / inertiaZ) / youngsModulus);
 
 /**
  * τ = V·S/(I·t): S is the first moment of the part of the section beyond the point, in m³, and
