@@ -15,6 +15,7 @@ import { PresentValues } from './core/present.ts';
 import { SetUp } from './core/set-up.ts';
 import { runSteps, type Step } from './core/steps.ts';
 import { Tally } from './core/tally.ts';
+import { TemperatureLog } from './core/temperature-log.ts';
 import { startFleet, type Fleet } from './demo/fleet.ts';
 import { createFlow } from './flow.ts';
 import { createHttp } from './http/http.ts';
@@ -123,6 +124,7 @@ const startOn = async (
     await records.alarmEvents(RECENT_ALARMS),
   );
   const present = new PresentValues(current.channels);
+  const temperatures = new TemperatureLog(current.channels);
   const broadcast = createBroadcast();
   let trouble: string | null = null;
   const committer = new Committer({
@@ -156,6 +158,7 @@ const startOn = async (
         decode = createDecode(next);
         tally.replan(next);
         present.replan(current.channels);
+        temperatures.replan(current.channels);
         const ended = alarms.replan(current.channels, Object.fromEntries(limits), clock.now());
         broadcast.feed.revision(setUp.revision);
         broadcast.feed.alarms(alarms.list());
@@ -177,7 +180,8 @@ const startOn = async (
   const push = createPush({ server: web.server, core, clock, host });
   broadcast.add(push.feed);
   const receive = createFlow({
-    ...{ plan: current, tally, alarms, present, committer, feed: broadcast.feed },
+    ...{ plan: current, tally, alarms, present, temperatures, committer },
+    feed: broadcast.feed,
     knows: (node) => current.site.nodes.some(({ id }) => id === node),
     decode: (delivery) => decode(delivery),
   });

@@ -4,6 +4,7 @@ import { channelBlocks, type SitePlan } from '../shared/pipeline/index.ts';
 import type { AlarmKeeper } from './core/alarms.ts';
 import type { Committer } from './core/committer.ts';
 import type { PresentValues } from './core/present.ts';
+import type { TemperatureLog } from './core/temperature-log.ts';
 import type { Tally } from './core/tally.ts';
 import type { Decode, Delivery, Feed } from './ports.ts';
 
@@ -14,16 +15,18 @@ export interface FlowParts {
   readonly tally: Tally;
   readonly alarms: AlarmKeeper;
   readonly present: PresentValues;
+  readonly temperatures: TemperatureLog;
   readonly committer: Committer;
   readonly feed: Feed;
 }
 
 export const createFlow = (parts: FlowParts): ((delivery: Delivery) => void) => {
-  const { plan, knows, decode, tally, alarms, present, committer, feed } = parts;
+  const { plan, knows, decode, tally, alarms, present, temperatures, committer, feed } = parts;
 
   const take = (frame: Frame, { arrived }: Delivery, settled: () => void) => {
     const placement = tally.place(frame, arrived);
-    const blocks = placement === 'again' ? [] : channelBlocks(frame, plan);
+    const blocks = placement === 'again' ? [] : channelBlocks(frame, plan, temperatures.at);
+    temperatures.accept(blocks);
     const events = alarms.accept(blocks, placement === 'late');
     if (placement === 'next') feed.live(present.accept(blocks));
     committer.add({

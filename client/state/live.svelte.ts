@@ -1,3 +1,4 @@
+import { isBelieved } from '../../shared/model/block.ts';
 import { fetchHistory } from '../feed/api.ts';
 import { openLive } from '../feed/live.ts';
 import type { Limit } from '../../shared/model/limit.ts';
@@ -13,7 +14,6 @@ import {
 import { Listeners } from './listeners.ts';
 import { holdShares, ladderOrder } from './ladder.ts';
 import { paced } from './pace.ts';
-import { isBelieved } from './quality.ts';
 import { Values, type Reading } from './values.ts';
 
 export type Connection = 'connecting' | 'live' | 'lost';

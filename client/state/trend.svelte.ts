@@ -1,3 +1,4 @@
+import { isBelieved } from '../../shared/model/block.ts';
 import { fetchHistory } from '../feed/api.ts';
 import type { LiveState } from './live.svelte.ts';
 import { buffersFor, NO_BUFFERS, type Buffers, type TrendBuffer } from './trend-buffer.ts';
@@ -42,7 +43,7 @@ export class TrendState {
     const fill = () => void this.#fill(buffers);
     const endings = [
       this.#live.tap(({ channel, at, last, min, max, quality }) => {
-        const believed = quality === 'good' || min <= max;
+        const believed = isBelieved(quality) || min <= max;
         buffers.get(channel)?.add(at, last, believed ? min : NaN, believed ? max : NaN);
       }),
       this.#live.onResumed(fill),

@@ -1,3 +1,4 @@
+import { isBelieved } from '../../shared/model/block.ts';
 import type { CurrentValue } from '../../shared/protocol/http.ts';
 import type { LiveValue } from '../../shared/protocol/socket.ts';
 import type { ShownQuality } from './quality.ts';
@@ -52,14 +53,14 @@ export class Values {
     this.#at[index] = at ?? NaN;
     this.#quality[index] = quality;
     this.#heard[index] = heard;
-    if (quality === 'good' && value !== null) this.widen(index, value, value);
+    if (isBelieved(quality) && value !== null) this.widen(index, value, value);
   }
 
   accept({ channel, at, last, min, max, quality }: LiveValue, heard: number): void {
     if (channel >= this.size) return;
     this.#quality[channel] = quality;
     this.#heard[channel] = heard;
-    if (quality === 'good' && Number.isFinite(last)) {
+    if (isBelieved(quality) && Number.isFinite(last)) {
       this.#value[channel] = last;
       this.#at[channel] = at;
     }

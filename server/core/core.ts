@@ -3,6 +3,7 @@ import { accept, refuse } from '../../shared/model/frame.ts';
 import type { Site } from '../../shared/model/site.ts';
 import { limitFaults } from '../../shared/pipeline/5-alarm/check-limits.ts';
 import type { ChannelPlan, SitePlan } from '../../shared/pipeline/index.ts';
+import { MOST_POINTS } from '../../shared/protocol/parse.ts';
 import type { Fault, Health, LimitsRequest } from '../../shared/protocol/http.ts';
 import type { Clock, Core, Feed, RecordStore, SampleStore } from '../ports.ts';
 import type { AlarmKeeper } from './alarms.ts';
@@ -26,8 +27,6 @@ export interface CoreParts {
   readonly health: () => Health;
   readonly limits: Map<string, readonly Limit[]>;
 }
-
-const MOST_POINTS = 20_000;
 
 /** Answers what screens and scripts ask, and takes what they change. */
 export const createCore = (parts: CoreParts): Core => {
@@ -79,7 +78,8 @@ export const createCore = (parts: CoreParts): Core => {
       if (!(Number.isInteger(points) && points >= 1 && points <= MOST_POINTS)) {
         return refuse('points', 'points', `a whole number, 1 to ${MOST_POINTS}`, String(points));
       }
-      const envelope = await channelEnvelope(samples, channel, from, to, points);
+      const past = { store: samples, planOf };
+      const envelope = await channelEnvelope(past, channel, from, to, points);
       return accept({ channel: id, simulated: site().simulated, from, to, ...envelope });
     },
   };

@@ -1,5 +1,10 @@
-import { apply, isRising } from '../../shared/model/fractional-linear.ts';
-import { epochSeconds, type EpochSeconds } from '../../shared/model/units.ts';
+import { apply, compose, isRising } from '../../shared/model/fractional-linear.ts';
+import {
+  celsius,
+  epochSeconds,
+  type Celsius,
+  type EpochSeconds,
+} from '../../shared/model/units.ts';
 import type { ChannelPlan, Conversion } from '../../shared/pipeline/index.ts';
 import type { Range } from '../../shared/pipeline/convert.ts';
 import type { Envelope, EnvelopeQuery, SampleStore } from '../ports.ts';
@@ -28,30 +33,48 @@ const windows = (plan: ChannelPlan, from: number, to: number): Window[] =>
     return start < end ? [{ from: start, to: end, conversion }] : [];
   });
 
-/** Times of points in which a sample of the input reached an end of its range. */
-const overRange = async (
-  store: SampleStore,
-  node: string,
-  input: string,
-  range: Range,
-  query: Omit<EnvelopeQuery, 'series'>,
-): Promise<ReadonlySet<number>> => {
-  if (range === null) return new Set();
-  const raw = await store.envelope({ ...query, series: { node, input, over: null } });
-  const inside = (i: number) => (raw.min[i] ?? NaN) > range[0] && (raw.max[i] ?? NaN) < range[1];
+/** Times of points in which a sample reached an end of its range, as float32 holds it (see `convert`). */
+const overRange = (raw: Envelope, range: Range): ReadonlySet<number> => {
+  const [low, high] = (range ?? [-Infinity, Infinity]).map(Math.fround) as [number, number];
+  const inside = (i: number) =>
+    Math.fround(raw.min[i] ?? NaN) > low && Math.fround(raw.max[i] ?? NaN) < high;
   return new Set([...raw.t].filter((_, i) => !inside(i)));
+};
+
+/** The gauges' temperature in each point, by its time; where none came, that of the point before. */
+const temperaturesAt = async (
+  past: Past,
+  id: string,
+  query: Omit<EnvelopeQuery, 'series'>,
+): Promise<(t: number) => Celsius | null> => {
+  const plan = past.planOf(id);
+  if (!plan) return () => null;
+  const { t, mean } = await channelEnvelope(past, plan, query.from, query.to, query.points);
+  const known = t.flatMap((at, i) => {
+    const value = mean[i];
+    return typeof value === 'number' ? [{ at, value }] : [];
+  });
+  let i = -1;
+  return (at) => {
+    while ((known[i + 1]?.at ?? Infinity) <= at) i++;
+    const found = known[Math.max(i, 0)];
+    return found ? celsius(found.value) : null;
+  };
 };
 
 const appendPoints = (
   into: ChannelEnvelope,
   raw: Envelope,
-  { map }: Conversion,
+  { map, correction }: Conversion,
+  temperature: (t: number) => Celsius | null,
   doubted: readonly ReadonlySet<number>[],
 ): void => {
-  const rising = isRising(map);
   raw.t.forEach((t, i) => {
+    const warmth = correction && temperature(t);
+    const whole = correction && warmth !== null ? compose(map, correction.at(warmth)) : map;
+    const rising = isRising(whole);
     const believed = !doubted.some((times) => times.has(t));
-    const at = (x: number | undefined) => (believed && x !== undefined ? apply(map, x) : null);
+    const at = (x: number | undefined) => (believed && x !== undefined ? apply(whole, x) : null);
     into.t.push(t);
     into.min.push(at(rising ? raw.min[i] : raw.max[i]));
     into.mean.push(at(raw.mean[i]));
@@ -59,35 +82,54 @@ const appendPoints = (
   });
 };
 
+/** Where the past is, and the channels that others are put right by. */
+export interface Past {
+  readonly store: SampleStore;
+  readonly planOf: (id: string) => ChannelPlan | undefined;
+}
+
 /**
- * A channel's past in its SI unit, derived on read by the records in force at
- * the time. Minimum and maximum are exact: a conversion keeps or turns order.
- * The mean is the value of the mean raw figure.
+ * A channel's past in its SI unit, derived on read by the records in force at the time. Minimum and
+ * maximum are exact: a conversion keeps or turns order; with a correction for temperature they are
+ * those at the point's mean temperature. The mean is the value of the mean raw figure.
  */
 export const channelEnvelope = async (
-  store: SampleStore,
+  past: Past,
   plan: ChannelPlan,
   from: EpochSeconds,
   to: EpochSeconds,
   points: number,
 ): Promise<ChannelEnvelope> => {
-  const step = (to - from) / points;
-  const result: ChannelEnvelope = { step, t: [], min: [], mean: [], max: [] };
+  const { store } = past;
+  const width = (to - from) / points;
+  let step = 0;
+  const result: Omit<ChannelEnvelope, 'step'> = { t: [], min: [], mean: [], max: [] };
   const { node, input } = plan.channel;
   for (const window of windows(plan, from, to)) {
-    const { excitation } = window.conversion;
+    const { excitation, correction } = window.conversion;
     const query = {
       from: epochSeconds(window.from),
       to: epochSeconds(window.to),
-      points: Math.max(1, Math.round((window.to - window.from) / step)),
+      points: Math.max(1, Math.round((window.to - window.from) / width)),
     };
-    const doubted = [await overRange(store, node, input, plan.range, query)];
-    if (excitation !== null) {
-      const range = plan.excitationRange(excitation);
-      doubted.push(await overRange(store, node, excitation, range, query));
-    }
     const raw = await store.envelope({ ...query, series: { node, input, over: excitation } });
-    appendPoints(result, raw, window.conversion, doubted);
+    const own =
+      excitation === null
+        ? raw
+        : await store.envelope({ ...query, series: { node, input, over: null } });
+    const doubted = [overRange(own, plan.range)];
+    if (excitation !== null) {
+      const supply = await store.envelope({
+        ...query,
+        series: { node, input: excitation, over: null },
+      });
+      doubted.push(overRange(supply, plan.excitationRange(excitation)));
+    }
+    const temperature = correction
+      ? await temperaturesAt(past, correction.channel, query)
+      : () => null;
+    appendPoints({ step, ...result }, raw, window.conversion, temperature, doubted);
+    step = Math.max(step, raw.step);
   }
-  return result;
+  return { step: step || width, ...result };
 };

@@ -1,4 +1,4 @@
-import type { ChannelBlock, Quality } from '../../shared/model/block.ts';
+import { isBelieved, type ChannelBlock, type Quality } from '../../shared/model/block.ts';
 import { epochSeconds, type EpochSeconds } from '../../shared/model/units.ts';
 import type { CurrentValue } from '../../shared/protocol/http.ts';
 import type { LiveValue } from '../../shared/protocol/socket.ts';
@@ -45,7 +45,7 @@ export class PresentValues {
       const present = this.#present[block.channel];
       if (present) {
         present.quality = block.quality;
-        if (block.quality === 'good') {
+        if (isBelieved(block.quality)) {
           present.value = block.last;
           present.at = at;
         }

@@ -75,6 +75,9 @@ const widest = (so: Extremes, { min, max }: ChannelEnvelope): Extremes => {
   return low <= high ? { min: low, max: high } : null;
 };
 
+const planIn = (site: SitePlan) => (id: string) =>
+  site.channels.find(({ channel }) => channel.id === id);
+
 /**
  * What a new set-up would make of the past: each channel whose value would be another one, with
  * its window, its extremes before and after and the largest change of a point's mean. Derived on
@@ -101,8 +104,8 @@ export async function* previewChange(
       const start = epochSeconds(from + (piece * (to - from)) / PIECES);
       const end = epochSeconds(from + ((piece + 1) * (to - from)) / PIECES);
       comparison.add(
-        await channelEnvelope(store, was, start, end, POINTS),
-        await channelEnvelope(store, plan, start, end, POINTS),
+        await channelEnvelope({ store, planOf: planIn(before) }, was, start, end, POINTS),
+        await channelEnvelope({ store, planOf: planIn(after) }, plan, start, end, POINTS),
       );
       done++;
       yield { kind: 'progress', done, of };

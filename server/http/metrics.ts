@@ -1,3 +1,4 @@
+import { QUALITIES } from '../../shared/model/block.ts';
 import { collectDefaultMetrics, Counter, Gauge, Registry } from 'prom-client';
 import type { NodeTally } from '../../shared/protocol/http.ts';
 import type { Clock, Core } from '../ports.ts';
@@ -101,10 +102,7 @@ export const createMetrics = ({ core, clock }: { core: Core; clock: Clock }): Me
       name: 'yieldward_channels',
       help: 'Channels by the quality of what they read now',
       label: 'quality',
-      always: [
-        ...(['good', 'over-range', 'missing', 'excitation'] as const),
-        ...(['uncalibrated', 'stale', 'none'] as const),
-      ],
+      always: [...QUALITIES, 'stale', 'none'],
     },
     () => core.values().map(({ quality }) => quality),
   );

@@ -1,14 +1,23 @@
 import type {
   BridgeCircuit,
   BridgeResponse,
+  HeatSink,
   Leads,
   LinearResponse,
   Response,
   Signal,
+  TemperatureCorrection,
 } from '../../shared/model/calibration.ts';
 import type { InputUnit, Material, Measurand } from '../../shared/model/site.ts';
-import { millivoltPerVoltToRatio, ohm } from '../../shared/model/units.ts';
+import {
+  celsius,
+  microstrainToStrain,
+  millimetreToMetre,
+  millivoltPerVoltToRatio,
+  ohm,
+} from '../../shared/model/units.ts';
 import { leadFault } from '../../shared/pipeline/3-strain/leads.ts';
+import { thermalShare } from '../../shared/pipeline/3-strain/thermal-output.ts';
 import type { Reading } from './reading.ts';
 
 type LeadsOfFile =
@@ -16,12 +25,26 @@ type LeadsOfFile =
   | { readonly kind: 'two-wire'; readonly resistance_ohm: number; readonly trimmed: boolean }
   | { readonly kind: 'three-wire' | 'excitation'; readonly resistance_ohm: number };
 
+interface TemperatureOfFile {
+  readonly channel: string;
+  readonly zero_Cel: number;
+  readonly reference_Cel?: number;
+  readonly factor_percent_per_100_K?: number;
+  readonly thermal_output?: {
+    readonly coefficients_microstrain: readonly number[];
+    readonly quoted_gauge_factor: number;
+  };
+}
+
 interface BridgeOfFile {
   readonly circuit: BridgeCircuit;
   readonly gauge_factor: number;
   readonly gauge_resistance_ohm: number;
   readonly poisson?: number;
   readonly leads: LeadsOfFile;
+  readonly temperature?: TemperatureOfFile;
+  readonly transverse_sensitivity_percent?: number;
+  readonly grid?: { readonly length_mm: number; readonly width_mm: number; readonly on: HeatSink };
   readonly zero_mV_per_V: number;
 }
 
@@ -65,6 +88,30 @@ const leadsOf = (file: LeadsOfFile): Leads => {
   }
 };
 
+/** Where gauge factors are stated unless it is said otherwise, °C. Common practice, no source. */
+const REFERENCE = 24;
+
+const temperatureOf = (file: TemperatureOfFile): TemperatureCorrection => ({
+  channel: file.channel,
+  zeroAt: celsius(file.zero_Cel),
+  factorPerKelvin: (file.factor_percent_per_100_K ?? 0) * 1e-4,
+  reference: celsius(file.reference_Cel ?? REFERENCE),
+  thermalOutput: file.thermal_output
+    ? {
+        coefficients: file.thermal_output.coefficients_microstrain.map(microstrainToStrain),
+        gaugeFactor: file.thermal_output.quoted_gauge_factor,
+      }
+    : null,
+});
+
+/** A thermal output that the bridge takes off by itself must not be taken off again. */
+const checkTemperature = (reading: Reading, at: string, circuit: BridgeCircuit | undefined) => {
+  const path = `${at}/temperature/thermal_output`;
+  if (circuit === undefined || !reading.has(path) || thermalShare(circuit) === 1) return;
+  const expected = `none with a ${circuit} bridge: its adjacent gauges take it off`;
+  reading.fault(path, expected, 'a polynomial');
+};
+
 const readBridge = (reading: Reading, at: string, context: ResponseContext): Response | null => {
   const { measurand, signal, material } = context;
   if (signal?.kind === 'direct') {
@@ -81,6 +128,7 @@ const readBridge = (reading: Reading, at: string, context: ResponseContext): Res
     const fault = leadFault(circuit, leadsOf(leadsFile));
     if (fault) reading.fault(`${at}/leads`, fault.expected, fault.came);
   }
+  checkTemperature(reading, at, circuit);
   const file = reading.value<BridgeOfFile>(at);
   const poisson = file?.poisson ?? material?.poisson;
   if (!file || poisson === undefined) return null;
@@ -91,6 +139,15 @@ const readBridge = (reading: Reading, at: string, context: ResponseContext): Res
     gaugeResistance: ohm(file.gauge_resistance_ohm),
     poisson,
     leads: leadsOf(file.leads),
+    temperature: file.temperature ? temperatureOf(file.temperature) : null,
+    transverseSensitivity: (file.transverse_sensitivity_percent ?? 0) / 100,
+    grid: file.grid
+      ? {
+          length: millimetreToMetre(file.grid.length_mm),
+          width: millimetreToMetre(file.grid.width_mm),
+          on: file.grid.on,
+        }
+      : null,
     zero: millivoltPerVoltToRatio(file.zero_mV_per_V),
   } satisfies BridgeResponse;
 };

@@ -35,6 +35,26 @@ const checkLoadChannel = (reading: Reading, structure: string, { channels }: Sit
   if (channel.structure !== structure) reading.faultAt(at, 'a channel of the same structure');
 };
 
+/** Channels that gauges are put right by; read when every channel is known. */
+const checkTemperatureChannels = (reading: Reading, members: string, { channels }: SiteContext) => {
+  for (const response of responsesIn(reading, members)) {
+    const at = `${response}/temperature/channel`;
+    if (!reading.has(at)) continue;
+    const measurand = channels.refer(at)?.measurand;
+    if (measurand !== undefined && measurand !== 'temperature') {
+      reading.fault(at, 'a temperature channel', `one of ${measurand}`);
+    }
+  }
+};
+
+const responsesIn = (reading: Reading, members: string): string[] =>
+  reading
+    .items(members)
+    .flatMap((member) => reading.items(`${member}/stations`))
+    .flatMap((station) => reading.items(`${station}/channels`))
+    .flatMap((channel) => reading.items(`${channel}/calibration`))
+    .map((record) => `${record}/response`);
+
 const readStructure = (
   reading: Reading,
   at: string,
@@ -55,6 +75,7 @@ const readStructure = (
       .items(`${at}/elevations`)
       .flatMap((pointer) => readElevation(reading, pointer, at, names, site));
     checkLoadChannel(reading, at, site);
+    checkTemperatureChannels(reading, `${at}/members`, site);
     const id = reading.value<string>(`${at}/id`);
     const name = reading.value<string>(`${at}/name`);
     const load = reading.value<number>(`${at}/safe_working_load_kN`);

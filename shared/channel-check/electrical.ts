@@ -1,11 +1,10 @@
-import type { Response } from '../model/calibration.ts';
+import type { HeatSink, Response } from '../model/calibration.ts';
 import type { Ohm, SquareMetre, Volt } from '../model/units.ts';
 import { shuntStrain } from '../pipeline/2-ratio/shunt.ts';
 import {
   ALLOWABLE_DENSITY,
   dissipatedPower,
   powerDensity,
-  type HeatSink,
 } from '../pipeline/3-strain/excitation.ts';
 import { judge, notJudged, type Band, type Check } from './verdict.ts';
 import { inWords } from './words.ts';

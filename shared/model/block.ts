@@ -3,10 +3,22 @@ import type { EpochSeconds, Seconds } from './units.ts';
 /**
  * good: believed. over-range: at or beyond the input's range. missing: no
  * number came. excitation: the measured excitation is out of its range or
- * nought. uncalibrated: no calibration record was in force yet.
+ * nought. uncalibrated: no calibration record was in force yet. uncorrected:
+ * believed, but not put right for temperature, which is not known.
  */
-export const QUALITIES = ['good', 'over-range', 'missing', 'excitation', 'uncalibrated'] as const;
+export const QUALITIES = [
+  'good',
+  'over-range',
+  'missing',
+  'excitation',
+  'uncalibrated',
+  'uncorrected',
+] as const;
 export type Quality = (typeof QUALITIES)[number];
+
+/** Is the value of this quality one to judge the structure by? */
+export const isBelieved = (quality: string): boolean =>
+  quality === 'good' || quality === 'uncorrected';
 
 /** One channel's samples of one frame, in the channel's SI unit; NaN where not believed. */
 export interface ChannelBlock {

@@ -1,4 +1,4 @@
-import type { Celsius, EpochSeconds, Newton, Ohm, Ratio, Volt } from './units.ts';
+import type { Celsius, EpochSeconds, Metre, Newton, Ohm, Ratio, Volt } from './units.ts';
 
 /** Where the excitation of a bridge is known from. */
 export type Excitation =
@@ -50,6 +50,45 @@ export type Leads =
   /** Full bridge whose excitation drops along two conductors. */
   | { readonly kind: 'excitation'; readonly resistance: Ohm };
 
+/** What an unloaded, bonded gauge shows over temperature, as its data sheet states it. */
+export interface ThermalOutput {
+  /** a0 … a4 of Σ ak·T^k with T in °C, m/m per °C^k; at most degree 4. */
+  readonly coefficients: readonly number[];
+  /** The instrument's gauge factor that the polynomial is quoted for, usually 2.0. */
+  readonly gaugeFactor: number;
+}
+
+/** How the strain of a gauge is put right for its temperature. */
+export interface TemperatureCorrection {
+  /** Id of the channel that measures the temperature of the structure at the gauge. */
+  readonly channel: string;
+  /** In the zero state that the calibration record states. */
+  readonly zeroAt: Celsius;
+  /** kT of GF(T) = GF·(1 + kT·(T − Tref)), 1/K; about +1e-4 for constantan. 0: not accounted for. */
+  readonly factorPerKelvin: number;
+  /** Tref, at which the gauge factor is stated. */
+  readonly reference: Celsius;
+  /** null: not accounted for, or the bridge takes it off by itself. */
+  readonly thermalOutput: ThermalOutput | null;
+}
+
+/** What a gauge is bonded to, by how well it carries heat away. */
+export const HEAT_SINKS = [
+  'thick-aluminium-or-copper',
+  'thick-steel',
+  'thin-steel',
+  'glass-ceramic-or-composite',
+  'unfilled-plastic',
+] as const;
+export type HeatSink = (typeof HEAT_SINKS)[number];
+
+/** A gauge's measuring grid. */
+export interface Grid {
+  readonly length: Metre;
+  readonly width: Metre;
+  readonly on: HeatSink;
+}
+
 export interface BridgeResponse {
   readonly kind: 'bridge';
   readonly circuit: BridgeCircuit;
@@ -58,6 +97,12 @@ export interface BridgeResponse {
   /** Poisson's ratio of the member under the gauge; used by the circuits with Poisson arms. */
   readonly poisson: number;
   readonly leads: Leads;
+  /** null: not put right for. */
+  readonly temperature: TemperatureCorrection | null;
+  /** Kt, a share: 0.01 for 1 %. 0: none, or not stated. Put right for in rosettes. */
+  readonly transverseSensitivity: number;
+  /** null: not stated. */
+  readonly grid: Grid | null;
   /**
    * Bridge output of the structure's zero state, V/V. Taken off as ΔR/R, after inversion,
    * with what the unbalance behind it does to the bridge's sensitivity accounted for.

@@ -36,7 +36,7 @@ const measure = (node: string, sampler: Sampler, since: number, count: number): 
   const [t0, dt] = [epochSeconds(BEGIN + since), seconds(1 / RATE)];
   const inputs = sampler.block(t0, dt, count);
   const name = { node, boot: 'b', seq: 0, sequenced: true };
-  return channelBlocks({ ...name, t0, dt, inputs }, plan);
+  return channelBlocks({ ...name, t0, dt, inputs }, plan, () => null);
 };
 
 const channelPlan = (id: string) => {

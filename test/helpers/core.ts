@@ -19,6 +19,7 @@ import {
   volt,
 } from '../../shared/model/units.ts';
 import type { CurrentValue, Health, NodeTally } from '../../shared/protocol/http.ts';
+import { PLAIN_GAUGE } from './plain-gauge.ts';
 
 export const START = 1_800_000_000;
 
@@ -41,6 +42,7 @@ const bridge = (leads: Leads): CalibrationRecord['response'] => ({
   poisson: 0.3,
   leads,
   zero: ratio(1.2e-4),
+  ...PLAIN_GAUGE,
 });
 
 const linear: CalibrationRecord['response'] = { kind: 'linear', perUnit: 0.02, zero: 0.1 };

@@ -5,6 +5,7 @@ import { apply } from '../../shared/model/fractional-linear.ts';
 import { inForce } from '../../shared/model/in-force.ts';
 import { epochSeconds, ohm, ratio } from '../../shared/model/units.ts';
 import { conversionAt, conversionOf } from '../../shared/pipeline/index.ts';
+import { PLAIN_GAUGE } from '../helpers/plain-gauge.ts';
 
 const head = (id: string, from: number, corrects: string | null) => ({
   ...{ id, validFrom: epochSeconds(from), author: 'Technician', reason: 'test' },
@@ -21,7 +22,7 @@ const record = (
   signal: { kind: 'counts', as: 'ratio', perCount: 1e-6, zeroCount: 0 },
   response: {
     ...{ kind: 'bridge', circuit: 'quarter', gaugeFactor, gaugeResistance: ohm(120) },
-    ...{ poisson: 0.3, leads: { kind: 'none' }, zero: ratio(0) },
+    ...{ poisson: 0.3, leads: { kind: 'none' }, zero: ratio(0), ...PLAIN_GAUGE },
   },
 });
 

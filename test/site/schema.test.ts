@@ -32,7 +32,13 @@ const fields = (at: Schema): [name: string, schema: Schema][] =>
   });
 
 /** Figures without a unit, and those whose unit a field beside them names. */
-const UNITLESS = ['gauge_factor', 'poisson', 'zero_count', 'highest_limit_share_of_yield'];
+const UNITLESS = [
+  'gauge_factor',
+  'quoted_gauge_factor',
+  'poisson',
+  'zero_count',
+  'highest_limit_share_of_yield',
+];
 const UNIT_BESIDE = [
   'raw',
   'noise',
@@ -42,7 +48,8 @@ const UNIT_BESIDE = [
   'rated_value',
   'zero_signal',
 ];
-const UNIT = /_(m|mm|cm2|cm3|cm4|s|kN|V|Cel|MPa|GPa|ohm|microstrain_per_K|per_count|mV_per_V)$/;
+const UNIT =
+  /_(m|mm|cm2|cm3|cm4|s|kN|V|Cel|percent|percent_per_100_K|MPa|GPa|ohm|microstrain_per_K|per_count|mV_per_V)$/;
 
 describe('docs/site.schema.json', () => {
   test('is a JSON Schema of the draft 2020-12', () => {

@@ -1,6 +1,7 @@
 import fc from 'fast-check';
 import type { BridgeCircuit, BridgeResponse, Leads } from '../../shared/model/calibration.ts';
 import { ohm, ratio } from '../../shared/model/units.ts';
+import { PLAIN_GAUGE } from '../helpers/plain-gauge.ts';
 
 /** A bridge of GF 2 and 120 Ω without leads or unbalance, changed where a test needs it. */
 export const bridge = (
@@ -14,6 +15,7 @@ export const bridge = (
   poisson: 0.3,
   leads: { kind: 'none' },
   zero: ratio(0),
+  ...PLAIN_GAUGE,
   ...change,
 });
 

@@ -1,3 +1,4 @@
+import { HEAT_SINKS } from '../../../shared/model/calibration.ts';
 import {
   exactly,
   figure,
@@ -158,6 +159,31 @@ export const SITE_SCHEMAS: Readonly<Record<string, Schema>> = {
       gaugeResistance: figure('Ω'),
       poisson: figure("Poisson's ratio of the member"),
       leads: ref('Leads'),
+      temperature: orNull(
+        map('Correction for the temperature of the gauge', {
+          channel: text('Id of the channel that measures it'),
+          zeroAt: figure('In the zero state of the record, °C'),
+          factorPerKelvin: figure('Change of the gauge factor, 1/K'),
+          reference: figure('Where the gauge factor is stated, °C'),
+          thermalOutput: orNull(
+            map('Polynomial in °C', {
+              coefficients: list(figure('m/m per °C to its power'), 'From power 0'),
+              gaugeFactor: figure('That it is quoted for'),
+            }),
+            'null: none to take off',
+          ),
+        }),
+        'null: not put right for',
+      ),
+      transverseSensitivity: figure('Kt, a share'),
+      grid: orNull(
+        map('Measuring grid', {
+          length: figure('m'),
+          width: figure('m'),
+          on: word('What it is bonded to', ...HEAT_SINKS),
+        }),
+        'null: not stated',
+      ),
       zero: figure("Bridge output of the structure's zero state, V/V"),
     }),
     map('(signal − zero) · perUnit', {

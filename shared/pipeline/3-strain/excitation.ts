@@ -1,3 +1,4 @@
+import type { HeatSink } from '../../model/calibration.ts';
 import {
   volt,
   watt,
@@ -8,16 +9,6 @@ import {
   type Watt,
   type WattPerSquareMetre,
 } from '../../model/units.ts';
-
-/** What the gauge is bonded to, by how well it carries heat away. */
-export const HEAT_SINKS = [
-  'thick-aluminium-or-copper',
-  'thick-steel',
-  'thin-steel',
-  'glass-ceramic-or-composite',
-  'unfilled-plastic',
-] as const;
-export type HeatSink = (typeof HEAT_SINKS)[number];
 
 export interface PowerDensityRange {
   /** For steady, accurate readings. */

@@ -1,26 +1,20 @@
-import type { BridgeCircuit } from '../../model/calibration.ts';
+import type {
+  BridgeCircuit,
+  TemperatureCorrection,
+  ThermalOutput,
+} from '../../model/calibration.ts';
 import { affine, type FractionalLinear } from '../../model/fractional-linear.ts';
 import { celsius, strain, type Celsius, type Strain } from '../../model/units.ts';
 
 export const HIGHEST_DEGREE = 4;
 
-/** What an unloaded, bonded gauge shows over temperature, as its data sheet states it. */
-export interface ThermalOutput {
-  /** a0 … a4 of Σ ak·T^k with T in °C, m/m per °C^k; at most degree 4. */
-  readonly coefficients: readonly number[];
-  /** The instrument's gauge factor that the polynomial is quoted for, usually 2.0. */
-  readonly gaugeFactor: number;
-}
-
 /** A gauge over temperature. */
-export interface GaugeTemperature {
+export interface GaugeTemperature extends Pick<
+  TemperatureCorrection,
+  'factorPerKelvin' | 'reference' | 'thermalOutput'
+> {
   /** At the reference temperature. */
   readonly gaugeFactor: number;
-  /** kT of GF(T) = GF·(1 + kT·(T − Tref)), 1/K; about +1e-4 for constantan. 0: not accounted for. */
-  readonly factorPerKelvin: number;
-  readonly reference: Celsius;
-  /** null: not accounted for, or the bridge takes it off by itself (see `thermalShare`). */
-  readonly thermalOutput: ThermalOutput | null;
 }
 
 /** A polynomial that cannot be, or null. */

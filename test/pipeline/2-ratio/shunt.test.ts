@@ -13,10 +13,12 @@ import {
 } from '../../../shared/pipeline/2-ratio/shunt.ts';
 import { shownChange } from '../../../shared/pipeline/3-strain/shown-change.ts';
 import { nodeVoltages, type Resistor } from '../3-strain/nodal.ts';
+import { PLAIN_GAUGE } from '../../helpers/plain-gauge.ts';
 
 const quarter = (change: Partial<BridgeResponse> = {}): BridgeResponse => ({
   ...{ kind: 'bridge', circuit: 'quarter', gaugeFactor: 2, gaugeResistance: ohm(120) },
   ...{ poisson: 0.3, leads: { kind: 'none' }, zero: ratio(0) },
+  ...PLAIN_GAUGE,
   ...change,
 });
 const across = (resistance: number, at: Shunt['at'] = 'arm', arm: Arm = 1): Shunt => ({

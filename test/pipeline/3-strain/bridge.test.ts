@@ -9,6 +9,7 @@ import {
   zeroChange,
 } from '../../../shared/pipeline/3-strain/bridge.ts';
 import { leadFactor, leadFault } from '../../../shared/pipeline/3-strain/leads.ts';
+import { PLAIN_GAUGE } from '../../helpers/plain-gauge.ts';
 
 const NONE: Leads = { kind: 'none' };
 
@@ -20,6 +21,7 @@ const bridge = (circuit: BridgeCircuit, change: Partial<BridgeResponse> = {}): B
   poisson: 0.3,
   leads: NONE,
   zero: ratio(0),
+  ...PLAIN_GAUGE,
   ...change,
 });
 

@@ -7,6 +7,7 @@ import { ohm, ratio } from '../../../shared/model/units.ts';
 import { bridgeOutput, bridgeStrain } from '../../../shared/pipeline/3-strain/bridge.ts';
 import { leadFault } from '../../../shared/pipeline/3-strain/leads.ts';
 import { networkOutput } from './wiring.ts';
+import { PLAIN_GAUGE } from '../../helpers/plain-gauge.ts';
 
 const within = (min: number, max: number) => fc.double({ min, max, noNaN: true });
 
@@ -39,6 +40,7 @@ const response = fc
     poisson: within(0, 0.5),
     zero: fc.constant(ratio(0)),
   })
+  .map((one) => ({ ...one, ...PLAIN_GAUGE }))
   .filter((candidate) => leadFault(candidate.circuit, candidate.leads) === null);
 const microstrain = within(-20_000, 20_000);
 const RUNS = { numRuns: 2000 };

@@ -5,10 +5,11 @@ import {
   conductorResistance,
   leadTemperatureStrain,
 } from '../../../shared/pipeline/3-strain/lead-temperature.ts';
+import { PLAIN_GAUGE } from '../../helpers/plain-gauge.ts';
 
 const response: BridgeResponse = {
   ...{ kind: 'bridge', circuit: 'quarter', gaugeFactor: 2, gaugeResistance: ohm(120) },
-  ...{ poisson: 0.3, zero: ratio(0) },
+  ...{ poisson: 0.3, zero: ratio(0), ...PLAIN_GAUGE },
   leads: { kind: 'two-wire', resistance: ohm(1), trimmed: false },
 };
 

@@ -61,7 +61,7 @@ test('a correction re-derives what is past, on read; the raw figures stay', asyn
     const plan = current.channels.find(({ channel }) => channel.id === TIP);
     if (!plan) throw new Error('no such channel');
     const [from, to] = [epochSeconds(NOW - 5400), epochSeconds(NOW - 1800)];
-    return channelEnvelope(samples, plan, from, to, 60);
+    return channelEnvelope({ store: samples, planOf: () => undefined }, plan, from, to, 60);
   };
   const raw = () =>
     samples.samples({
