@@ -22,7 +22,10 @@ module.exports = {
     ),
     forbid(
       'only-pipeline-index-composes',
-      { path: '^shared/pipeline/[^/]+\\.ts$', pathNot: '^shared/pipeline/index\\.ts$' },
+      {
+        path: '^shared/pipeline/[^/]+\\.ts$',
+        pathNot: '^shared/pipeline/(index|plan|evaluation)\\.ts$',
+      },
       { path: '^shared/pipeline/\\d-' },
     ),
     forbid(

@@ -1,6 +1,7 @@
 /** The composition root: the only file that knows every adapter. */
 import type { Limit } from '../shared/model/limit.ts';
 import { channelsOf, type Site } from '../shared/model/site.ts';
+import { VirtualStream } from '../shared/pipeline/index.ts';
 import type { Health } from '../shared/protocol/http.ts';
 import { systemClock } from './clock.ts';
 import type { Config } from './config.ts';
@@ -27,6 +28,7 @@ import { externalBroker } from './ingest/external-broker.ts';
 import { packageFile } from './package-root.ts';
 import type { FrameSource, RecordStore, SampleStore, SiteRevision } from './ports.ts';
 import { createPush } from './push/push.ts';
+import { compileExpression } from './site/expression.ts';
 import { siteFormat } from './site/format.ts';
 import { loadSiteText } from './site/load.ts';
 import { openInfluxStore } from './store/influx/open.ts';
@@ -109,12 +111,12 @@ const startOn = async (
   say: (line: string) => void,
 ): Promise<App> => {
   const clock = systemClock;
-  const current = new CurrentSite(site);
+  const current = new CurrentSite(site, compileExpression);
   const count = `${current.channels.length} channels${site.simulated ? ', SIMULATED' : ''}`;
   say(`Site: ${site.name}, ${count}`);
   say(`Store: ${config.store ?? `SQLite in ${config.dataFolder}`}`);
   const { samples, records } = stores;
-  await samples.follow(excitationPairs(current.channels));
+  await samples.follow(excitationPairs(current.measured));
   const limits = await limitsInForce(site, records);
   const tally = new Tally(site, await samples.tally());
   const alarms = new AlarmKeeper(
@@ -124,7 +126,8 @@ const startOn = async (
     await records.alarmEvents(RECENT_ALARMS),
   );
   const present = new PresentValues(current.channels);
-  const temperatures = new TemperatureLog(current.channels);
+  const temperatures = new TemperatureLog(current.measured);
+  const virtual = { stream: new VirtualStream(current.virtual) };
   const broadcast = createBroadcast();
   let trouble: string | null = null;
   const committer = new Committer({
@@ -158,12 +161,13 @@ const startOn = async (
         decode = createDecode(next);
         tally.replan(next);
         present.replan(current.channels);
-        temperatures.replan(current.channels);
+        temperatures.replan(current.measured);
+        virtual.stream = new VirtualStream(current.virtual);
         const ended = alarms.replan(current.channels, Object.fromEntries(limits), clock.now());
         broadcast.feed.revision(setUp.revision);
         broadcast.feed.alarms(alarms.list());
         if (ended.length > 0) await records.addAlarmEvents(ended);
-        await samples.follow(excitationPairs(current.channels));
+        await samples.follow(excitationPairs(current.measured));
       },
     },
     revision,
@@ -180,7 +184,7 @@ const startOn = async (
   const push = createPush({ server: web.server, core, clock, host });
   broadcast.add(push.feed);
   const receive = createFlow({
-    ...{ plan: current, tally, alarms, present, temperatures, committer },
+    ...{ plan: current, tally, alarms, present, temperatures, virtual, committer },
     feed: broadcast.feed,
     knows: (node) => current.site.nodes.some(({ id }) => id === node),
     decode: (delivery) => decode(delivery),

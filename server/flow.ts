@@ -1,6 +1,6 @@
 /** The way of every message: decode → place → convert → alarm → commit → acknowledge → push. */
 import type { Frame } from '../shared/model/frame.ts';
-import { channelBlocks, type SitePlan } from '../shared/pipeline/index.ts';
+import { channelBlocks, VirtualStream, type SitePlan } from '../shared/pipeline/index.ts';
 import type { AlarmKeeper } from './core/alarms.ts';
 import type { Committer } from './core/committer.ts';
 import type { PresentValues } from './core/present.ts';
@@ -16,17 +16,22 @@ export interface FlowParts {
   readonly alarms: AlarmKeeper;
   readonly present: PresentValues;
   readonly temperatures: TemperatureLog;
+  readonly virtual: { readonly stream: VirtualStream };
   readonly committer: Committer;
   readonly feed: Feed;
 }
 
 export const createFlow = (parts: FlowParts): ((delivery: Delivery) => void) => {
-  const { plan, knows, decode, tally, alarms, present, temperatures, committer, feed } = parts;
+  const { plan, knows, decode, tally, alarms, present, temperatures, virtual, committer, feed } =
+    parts;
 
   const take = (frame: Frame, { arrived }: Delivery, settled: () => void) => {
     const placement = tally.place(frame, arrived);
-    const blocks = placement === 'again' ? [] : channelBlocks(frame, plan, temperatures.at);
-    temperatures.accept(blocks);
+    const measured = placement === 'again' ? [] : channelBlocks(frame, plan, temperatures.at);
+    temperatures.accept(measured);
+    // What came late meets what came with it, not what is under way at present.
+    const stream = placement === 'late' ? new VirtualStream(plan.virtual) : virtual.stream;
+    const blocks = [...measured, ...stream.accept(measured, placement === 'late')];
     const events = alarms.accept(blocks, placement === 'late');
     if (placement === 'next') feed.live(present.accept(blocks));
     committer.add({

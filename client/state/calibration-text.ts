@@ -5,7 +5,7 @@ import type {
   Leads,
   Signal,
 } from '../../shared/model/calibration.ts';
-import type { Measurand } from '../../shared/model/site.ts';
+import { MEASURAND_UNITS, type Measurand } from '../../shared/model/site.ts';
 import { ratioToMillivoltPerVolt } from '../../shared/model/units.ts';
 import { decimalText } from './number-text.ts';
 
@@ -69,14 +69,6 @@ const signalLines = (signal: Signal): Line[] => {
   }
 };
 
-const SI_UNIT: Readonly<Record<Measurand, string>> = {
-  strain: 'm/m',
-  shear: 'm/m',
-  force: 'N',
-  displacement: 'm',
-  temperature: '°C',
-};
-
 /** A calibration record in words, as figures of the record itself. */
 export const calibrationLines = (record: CalibrationRecord, measurand: Measurand): Line[] => {
   const { response } = record;
@@ -85,7 +77,7 @@ export const calibrationLines = (record: CalibrationRecord, measurand: Measurand
       ...signalLines(record.signal),
       {
         what: 'Response',
-        text: `straight line, ${significant(response.perUnit)} per ${SI_UNIT[measurand]}`,
+        text: `straight line, ${significant(response.perUnit)} per ${measurand === 'temperature' ? '°C' : MEASURAND_UNITS[measurand]}`,
       },
       { what: 'Zero', text: significant(response.zero) },
     ];

@@ -8,6 +8,7 @@ import {
   type Structure,
 } from '../../shared/model/site.ts';
 import { pascal, strain, type Pascal, type Share } from '../../shared/model/units.ts';
+import { sourcesOf } from '../../shared/model/virtual.ts';
 import { limitContextOf } from '../../shared/pipeline/index.ts';
 import { stressOf, utilisation } from '../../shared/pipeline/4-stress/stress.ts';
 import {
@@ -33,6 +34,14 @@ export const channelFacts = (site: Site): ChannelFacts[] => {
   const structureOf = new Map(
     site.structures.flatMap((structure) => structure.members.map((m) => [m, structure] as const)),
   );
+  const channels = new Map(channelsOf(site).map(({ channel }) => [channel.id, channel]));
+  const nodesOf = (channel: Channel): readonly string[] =>
+    channel.kind === 'measured'
+      ? [channel.node]
+      : sourcesOf(channel.definition).flatMap((id) => {
+          const source = channels.get(id);
+          return source ? nodesOf(source) : [];
+        });
   const staleAfter = new Map<string, number>(site.nodes.map((n) => [n.id, n.staleAfter]));
   return channelsOf(site).flatMap(({ channel, member, station }, index) => {
     const structure = structureOf.get(member);
@@ -40,7 +49,9 @@ export const channelFacts = (site: Site): ChannelFacts[] => {
       ? {
           ...{ index, channel, member, station, structure },
           context: limitContextOf(channel, member, site),
-          staleAfter: staleAfter.get(channel.node) ?? Infinity,
+          staleAfter: nodesOf(channel)
+            .map((node) => staleAfter.get(node) ?? Infinity)
+            .reduce((most, one) => Math.max(most, one), 0),
         }
       : [];
   });

@@ -3,9 +3,12 @@ import type { Measurand } from '../../shared/model/site.ts';
 import {
   celsius,
   celsiusToFahrenheit,
+  degreeToRadian,
   fahrenheitToCelsius,
   inchToMetre,
+  kilonewtonMetreToNewtonMetre,
   kilonewtonToNewton,
+  kipFootToNewtonMetre,
   kipToNewton,
   ksiToPascal,
   megapascalToPascal,
@@ -15,11 +18,16 @@ import {
   microstrainToStrain,
   millimetreToMetre,
   newton,
+  newtonMetre,
+  newtonMetreToKilonewtonMetre,
+  newtonMetreToKipFoot,
   newtonToKilonewton,
   newtonToKip,
   pascal,
   pascalToKsi,
   pascalToMegapascal,
+  radian,
+  radianToDegree,
   strain,
   strainToMicrostrain,
 } from '../../shared/model/units.ts';
@@ -36,7 +44,7 @@ export interface Scale {
   readonly decimals: (shown: number) => number;
 }
 
-export type Kind = 'strain' | 'stress' | 'force' | 'displacement' | 'temperature' | 'share';
+export type Kind = Exclude<Measurand, 'shear'> | 'share';
 
 const always = (decimals: number) => () => decimals;
 
@@ -55,10 +63,32 @@ const SHARE: Scale = {
   decimals: always(1),
 };
 
+const ANGLE: Scale = {
+  unit: '°',
+  fromSi: (value) => radianToDegree(radian(value)),
+  toSi: degreeToRadian,
+  decimals: always(1),
+};
+
+const NUMBER: Scale = {
+  unit: '',
+  fromSi: (value) => value,
+  toSi: (shown) => shown,
+  decimals: always(3),
+};
+
 const SCALES: Readonly<Record<UnitSystem, Readonly<Record<Kind, Scale>>>> = {
   si: {
     strain: STRAIN,
     share: SHARE,
+    angle: ANGLE,
+    number: NUMBER,
+    moment: {
+      unit: 'kN·m',
+      fromSi: (value) => newtonMetreToKilonewtonMetre(newtonMetre(value)),
+      toSi: kilonewtonMetreToNewtonMetre,
+      decimals: always(1),
+    },
     stress: {
       unit: 'MPa',
       fromSi: (value) => pascalToMegapascal(pascal(value)),
@@ -87,6 +117,14 @@ const SCALES: Readonly<Record<UnitSystem, Readonly<Record<Kind, Scale>>>> = {
   us: {
     strain: STRAIN,
     share: SHARE,
+    angle: ANGLE,
+    number: NUMBER,
+    moment: {
+      unit: 'kip·ft',
+      fromSi: (value) => newtonMetreToKipFoot(newtonMetre(value)),
+      toSi: kipFootToNewtonMetre,
+      decimals: always(2),
+    },
     stress: {
       unit: 'ksi',
       fromSi: (value) => pascalToKsi(pascal(value)),
@@ -130,7 +168,9 @@ export const figureText = (value: number, scale: Scale): string => {
 };
 
 export const quantityText = (value: number, scale: Scale): string =>
-  `${figureText(value, scale)}${NO_BREAK}${scale.unit}`;
+  scale.unit === ''
+    ? figureText(value, scale)
+    : `${figureText(value, scale)}${NO_BREAK}${scale.unit}`;
 
 /** A place along a member, m. */
 export const alongText = (metres: number, system: UnitSystem): string =>

@@ -1,5 +1,6 @@
 import type { Bounds, ChannelFacts } from './channel-facts.ts';
 import { stressAt } from './channel-facts.ts';
+import type { Measurand } from '../../shared/model/site.ts';
 import type { Scale } from './quantity.ts';
 import type { Cell, TrendColumns } from './trend-buffer.ts';
 
@@ -17,7 +18,7 @@ export const DASHES: readonly (readonly number[])[] = [
 export type StrainAs = 'stress' | 'strain';
 
 /** What a chart has on its upright axis. Channels of one group share a chart. */
-export type Group = 'strain' | 'force' | 'displacement' | 'temperature';
+export type Group = Exclude<Measurand, 'shear'>;
 
 export const groupOf = ({ channel }: ChannelFacts): Group =>
   channel.measurand === 'shear' ? 'strain' : channel.measurand;

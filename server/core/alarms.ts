@@ -8,7 +8,7 @@ import {
   type LimitState,
 } from '../../shared/pipeline/5-alarm/evaluate.ts';
 import { thresholdOf, type Threshold } from '../../shared/pipeline/5-alarm/threshold.ts';
-import type { ChannelPlan } from '../../shared/pipeline/index.ts';
+import type { PlannedChannel } from '../../shared/pipeline/index.ts';
 import type { AlarmList } from '../../shared/protocol/http.ts';
 
 const RECENT = 200;
@@ -31,14 +31,14 @@ const eventOf = (id: string, { threshold }: Watch, crossing: Crossing): AlarmEve
 
 /** The alarm stage with its memory: every sample of every channel against the limits in force. */
 export class AlarmKeeper {
-  #channels: readonly ChannelPlan[];
+  #channels: readonly PlannedChannel[];
   #watches: Watch[][];
   readonly #active = new Map<string, AlarmEvent>();
   #recent: AlarmEvent[];
 
   /** `last`: the last event of each channel and level; `recent`: newest first. */
   constructor(
-    channels: readonly ChannelPlan[],
+    channels: readonly PlannedChannel[],
     limits: Readonly<Record<string, readonly Limit[]>>,
     last: readonly AlarmEvent[],
     recent: readonly AlarmEvent[],
@@ -50,7 +50,7 @@ export class AlarmKeeper {
   }
 
   /** Puts a channel's limits in force from the next sample on; gives what ends thereby. */
-  setLimits(plan: ChannelPlan, limits: readonly Limit[], at: EpochSeconds): AlarmEvent[] {
+  setLimits(plan: PlannedChannel, limits: readonly Limit[], at: EpochSeconds): AlarmEvent[] {
     const dropped = (this.#watches[plan.index] ?? []).filter(
       ({ threshold, state }) =>
         state.phase === 'raised' && !limits.some(({ level }) => level === threshold.level),
@@ -67,7 +67,7 @@ export class AlarmKeeper {
 
   /** Goes on with another set-up; gives what ends with channels and limits that are gone. */
   replan(
-    channels: readonly ChannelPlan[],
+    channels: readonly PlannedChannel[],
     limits: Readonly<Record<string, readonly Limit[]>>,
     at: EpochSeconds,
   ): AlarmEvent[] {
@@ -108,7 +108,7 @@ export class AlarmKeeper {
     return { active, recent: this.#recent };
   }
 
-  #watch(plan: ChannelPlan, limits: readonly Limit[]): Watch[] {
+  #watch(plan: PlannedChannel, limits: readonly Limit[]): Watch[] {
     return limits.map((limit) => {
       const raised = this.#active.get(`${plan.channel.id}/${limit.level}`);
       const state: LimitState = raised ? { phase: 'raised', since: raised.at } : UNSEEN;

@@ -2,12 +2,12 @@ import type { Limit } from '../../shared/model/limit.ts';
 import { accept, refuse } from '../../shared/model/frame.ts';
 import type { Site } from '../../shared/model/site.ts';
 import { limitFaults } from '../../shared/pipeline/5-alarm/check-limits.ts';
-import type { ChannelPlan, SitePlan } from '../../shared/pipeline/index.ts';
+import type { PlannedChannel, SitePlan } from '../../shared/pipeline/index.ts';
 import { MOST_POINTS } from '../../shared/protocol/parse.ts';
 import type { Fault, Health, LimitsRequest } from '../../shared/protocol/http.ts';
 import type { Clock, Core, Feed, RecordStore, SampleStore } from '../ports.ts';
 import type { AlarmKeeper } from './alarms.ts';
-import { channelEnvelope } from './history.ts';
+import { pastOf } from './virtual-history.ts';
 import type { PresentValues } from './present.ts';
 import type { Tally } from './tally.ts';
 import { textFaults } from './text-faults.ts';
@@ -31,7 +31,7 @@ export interface CoreParts {
 /** Answers what screens and scripts ask, and takes what they change. */
 export const createCore = (parts: CoreParts): Core => {
   const { site, plan, samples, records, tally, alarms, present, feed, clock, limits } = parts;
-  const planOf = (id: string): ChannelPlan | undefined =>
+  const planOf = (id: string): PlannedChannel | undefined =>
     plan.channels.find(({ channel }) => channel.id === id);
   const values = () => present.values((node) => tally.isStale(node, clock.now()));
 
@@ -78,8 +78,7 @@ export const createCore = (parts: CoreParts): Core => {
       if (!(Number.isInteger(points) && points >= 1 && points <= MOST_POINTS)) {
         return refuse('points', 'points', `a whole number, 1 to ${MOST_POINTS}`, String(points));
       }
-      const past = { store: samples, planOf };
-      const envelope = await channelEnvelope(past, channel, from, to, points);
+      const envelope = await pastOf({ store: samples, plan }, channel, from, to, points);
       return accept({ channel: id, simulated: site().simulated, from, to, ...envelope });
     },
   };

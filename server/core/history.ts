@@ -6,6 +6,7 @@ import {
   type EpochSeconds,
 } from '../../shared/model/units.ts';
 import type { ChannelPlan, Conversion } from '../../shared/pipeline/index.ts';
+import { lastBefore } from '../../shared/series/last-before.ts';
 import type { Range } from '../../shared/pipeline/convert.ts';
 import type { Envelope, EnvelopeQuery, SampleStore } from '../ports.ts';
 
@@ -42,7 +43,7 @@ const overRange = (raw: Envelope, range: Range): ReadonlySet<number> => {
 };
 
 /** The gauges' temperature in each point, by its time; where none came, that of the point before. */
-const temperaturesAt = async (
+export const temperaturesAt = async (
   past: Past,
   id: string,
   query: Omit<EnvelopeQuery, 'series'>,
@@ -54,10 +55,9 @@ const temperaturesAt = async (
     const value = mean[i];
     return typeof value === 'number' ? [{ at, value }] : [];
   });
-  let i = -1;
+  const times = known.map(({ at }) => at);
   return (at) => {
-    while ((known[i + 1]?.at ?? Infinity) <= at) i++;
-    const found = known[Math.max(i, 0)];
+    const found = known[Math.max(0, lastBefore(times, at))];
     return found ? celsius(found.value) : null;
   };
 };

@@ -2,7 +2,7 @@ import { isBelieved, type ChannelBlock, type Quality } from '../../shared/model/
 import { epochSeconds, type EpochSeconds } from '../../shared/model/units.ts';
 import type { CurrentValue } from '../../shared/protocol/http.ts';
 import type { LiveValue } from '../../shared/protocol/socket.ts';
-import type { ChannelPlan } from '../../shared/pipeline/index.ts';
+import type { PlannedChannel } from '../../shared/pipeline/index.ts';
 
 interface Present {
   value: number | null;
@@ -15,24 +15,24 @@ const NOTHING: Present = { value: null, at: null, quality: 'none' };
 /** The last word of every channel. */
 export class PresentValues {
   #present: Present[];
-  #channels: readonly ChannelPlan[];
+  #channels: readonly PlannedChannel[];
 
-  constructor(channels: readonly ChannelPlan[]) {
+  constructor(channels: readonly PlannedChannel[]) {
     this.#channels = channels;
     this.#present = channels.map(() => ({ ...NOTHING }));
   }
 
   /** Goes on with another set-up; what was derived otherwise than now is forgotten. */
-  replan(channels: readonly ChannelPlan[]): void {
+  replan(channels: readonly PlannedChannel[]): void {
     const before = new Map(
-      this.#channels.map(({ channel, conversions }, i) => [
+      this.#channels.map(({ channel }, i) => [
         channel.id,
-        { derivation: JSON.stringify(conversions), present: this.#present[i] },
+        { derivation: JSON.stringify(channel), present: this.#present[i] },
       ]),
     );
-    this.#present = channels.map(({ channel, conversions }) => {
+    this.#present = channels.map(({ channel }) => {
       const was = before.get(channel.id);
-      const same = was?.derivation === JSON.stringify(conversions);
+      const same = was?.derivation === JSON.stringify(channel);
       return (same && was.present) || { ...NOTHING };
     });
     this.#channels = channels;
@@ -56,9 +56,9 @@ export class PresentValues {
   }
 
   values(isStale: (node: string) => boolean): CurrentValue[] {
-    return this.#channels.map(({ channel }, i) => {
+    return this.#channels.map(({ channel, nodes }, i) => {
       const { value, at, quality } = this.#present[i] ?? NOTHING;
-      const stale = quality !== 'none' && isStale(channel.node);
+      const stale = quality !== 'none' && nodes.some(isStale);
       return { channel: channel.id, value, at, quality: stale ? 'stale' : quality };
     });
   }

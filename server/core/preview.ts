@@ -76,7 +76,7 @@ const widest = (so: Extremes, { min, max }: ChannelEnvelope): Extremes => {
 };
 
 const planIn = (site: SitePlan) => (id: string) =>
-  site.channels.find(({ channel }) => channel.id === id);
+  site.measured.find(({ channel }) => channel.id === id);
 
 /**
  * What a new set-up would make of the past: each channel whose value would be another one, with
@@ -89,8 +89,8 @@ export async function* previewChange(
   after: SitePlan,
   now: number,
 ): AsyncGenerator<PreviewLine> {
-  const known = new Map(before.channels.map((plan) => [plan.channel.id, plan]));
-  const work = after.channels.flatMap((plan) => {
+  const known = new Map(before.measured.map((plan) => [plan.channel.id, plan]));
+  const work = after.measured.flatMap((plan) => {
     const was = known.get(plan.channel.id);
     const window = was && changedWindow(was, plan, now);
     return was && window ? [{ was, plan, from: window[0], to: window[1] }] : [];

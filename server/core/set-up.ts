@@ -2,7 +2,6 @@ import type { Fault } from '../../shared/model/fault.ts';
 import type { Limit } from '../../shared/model/limit.ts';
 import { channelsOf, type Site } from '../../shared/model/site.ts';
 import type { EpochSeconds } from '../../shared/model/units.ts';
-import { planSite } from '../../shared/pipeline/index.ts';
 import type {
   PreviewLine,
   RevisionsAnswer,
@@ -91,8 +90,8 @@ export class SetUp implements SetUpDesk {
     const { samples, current, clock } = this.#parts;
     const checked = this.#check(document);
     if (!checked.ok) return checked;
-    const before = planSite(current.site);
-    const lines = previewChange(samples, before, planSite(checked.site), clock.now());
+    const before = current.planFor(current.site);
+    const lines = previewChange(samples, before, current.planFor(checked.site), clock.now());
     return { ok: true, lines };
   }
 

@@ -43,7 +43,11 @@ export const successionFaults = (before: Site, after: Site): Fault[] => {
   const stood = places(before);
   for (const [id, { channel, at }] of places(after)) {
     const was = stood.get(id)?.channel;
-    if (!was) continue;
+    if (was?.kind !== 'measured') continue;
+    if (channel.kind !== 'measured') {
+      faults.push({ path: at, expected: `${id} measured, as it was`, came: 'virtual' });
+      continue;
+    }
     faults.push(
       ...keptFaults(was.calibration, channel.calibration, `${at}/calibration`),
       ...keptFaults(was.zeros, channel.zeros, `${at}/zeros`),

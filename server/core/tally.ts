@@ -42,7 +42,7 @@ const inputsOfChannels = (site: Site, node: string): Set<string> => {
   const inputs = new Set<string>();
   for (const { members } of site.structures) {
     for (const channel of members.flatMap((m) => m.stations.flatMap((s) => s.channels))) {
-      if (channel.node !== node) continue;
+      if (channel.kind !== 'measured' || channel.node !== node) continue;
       inputs.add(channel.input);
       for (const { signal } of channel.calibration) {
         if ('excitation' in signal && signal.excitation.kind === 'measured') {

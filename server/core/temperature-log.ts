@@ -1,6 +1,7 @@
 import type { ChannelBlock } from '../../shared/model/block.ts';
 import { celsius, type Celsius } from '../../shared/model/units.ts';
 import type { ChannelPlan, TemperatureAt } from '../../shared/pipeline/index.ts';
+import { lastBefore } from '../../shared/series/last-before.ts';
 
 /** Kept no closer together than this, s. */
 const SPACING = 5;
@@ -15,14 +16,8 @@ interface Log {
 }
 
 const temperatureAmong = ({ at, value }: Log, t: number): Celsius | null => {
-  let [low, high] = [0, at.length];
-  while (low < high) {
-    const middle = (low + high) >> 1;
-    if ((at[middle] ?? Infinity) <= t) low = middle + 1;
-    else high = middle;
-  }
   // Before the first reading, that one: it is nearer than none.
-  const i = Math.max(0, low - 1);
+  const i = Math.max(0, lastBefore(at, t));
   const [found, when] = [value[i], at[i]];
   if (found === undefined || when === undefined || Math.abs(t - when) > HOLD) return null;
   return celsius(found);

@@ -7,6 +7,7 @@ import { encodeSenml } from '../../shared/pipeline/1-decode/senml.ts';
 import { topicOf } from '../../shared/pipeline/1-decode/topics.ts';
 import { planSite } from '../../shared/pipeline/index.ts';
 import { writeCbor } from '../ingest/cbor.ts';
+import { compileExpression } from '../site/expression.ts';
 import { loadSite } from '../site/load.ts';
 import { NODE_USAGE, readNodeArguments, type NodeArguments } from './arguments.ts';
 import { demoTopic, readFaultRequest } from './fault-request.ts';
@@ -89,7 +90,7 @@ const main = async () => {
   const node = read.site.nodes.find(({ id }) => id === args.node);
   if (!node) throw new Error(`--node: expected one of the site's, came ${args.node}`);
   const boot = randomUUID().slice(0, 8);
-  const plan = planSite(read.site);
+  const plan = planSite(read.site, compileExpression);
   const random = seededRandom(args.seed);
   const sampler = createSampler({ plan, node, begin: args.begin, random });
   const link: Link = openLink({

@@ -1,14 +1,6 @@
-import { channelsOf, type Measurand } from '../../shared/model/site.ts';
+import { channelsOf, MEASURAND_UNITS } from '../../shared/model/site.ts';
 import type { ChannelReport } from '../../shared/protocol/http.ts';
 import type { Core } from '../ports.ts';
-
-const UNITS: Readonly<Record<Measurand, ChannelReport['unit']>> = {
-  strain: 'm/m',
-  shear: 'm/m',
-  force: 'N',
-  displacement: 'm',
-  temperature: 'Cel',
-};
 
 /** Every channel in site order, with its limits in force and what it reads now. */
 export const channelReports = (core: Core): ChannelReport[] => {
@@ -25,9 +17,9 @@ export const channelReports = (core: Core): ChannelReport[] => {
     member: member.id,
     station: station.id,
     measurand: channel.measurand,
-    unit: UNITS[channel.measurand],
-    node: channel.node,
-    input: channel.input,
+    unit: MEASURAND_UNITS[channel.measurand],
+    node: channel.kind === 'measured' ? channel.node : null,
+    input: channel.kind === 'measured' ? channel.input : null,
     limits: limits[channel.id] ?? [],
     current: current.get(channel.id) ?? {
       channel: channel.id,

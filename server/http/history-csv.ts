@@ -6,7 +6,13 @@ import {
   metre,
   metreToMillimetre,
   newton,
+  newtonMetre,
+  newtonMetreToKilonewtonMetre,
   newtonToKilonewton,
+  pascal,
+  pascalToMegapascal,
+  radian,
+  radianToDegree,
   strain,
   strainToMicrostrain,
 } from '../../shared/model/units.ts';
@@ -29,6 +35,10 @@ const SHOWN: Readonly<Record<Measurand, Shown>> = {
   force: { unit: 'kN', show: (si) => newtonToKilonewton(newton(si)) },
   displacement: { unit: 'mm', show: (si) => metreToMillimetre(metre(si)) },
   temperature: { unit: 'Cel', show: (si) => celsius(si) },
+  stress: { unit: 'MPa', show: (si) => pascalToMegapascal(pascal(si)) },
+  moment: { unit: 'kN_m', show: (si) => newtonMetreToKilonewtonMetre(newtonMetre(si)) },
+  angle: { unit: 'degree', show: (si) => radianToDegree(radian(si)) },
+  number: { unit: '1', show: (si) => si },
 };
 
 /** More digits than any converter has; fewer than bring the double's last bit to light. */

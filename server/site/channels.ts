@@ -11,6 +11,8 @@ import type { Reading } from './reading.ts';
 export interface ChannelEntry {
   /** undefined: at fault. */
   readonly measurand: Measurand | undefined;
+  /** A virtual channel that is not read yet, and nothing can come from. */
+  pending?: boolean;
   /** Pointer of the structure it belongs to. */
   readonly structure: string;
 }
@@ -85,5 +87,5 @@ export const readChannel = (
   const node = reading.value<string>(`${at}/node`);
   if (id === undefined || name === undefined || node === undefined) return [];
   if (measurand === undefined || input === undefined) return [];
-  return [{ id, name, measurand, node, input, calibration, zeros, limits }];
+  return [{ kind: 'measured', id, name, measurand, node, input, calibration, zeros, limits }];
 };

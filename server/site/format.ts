@@ -30,8 +30,9 @@ const zeroOfFile = (zero: ZeroRecord, unit: unknown) => {
 
 const inputUnitOf = (site: Site, id: string): InputUnit | undefined => {
   const found = channelsOf(site).find(({ channel }) => channel.id === id)?.channel;
-  const node = site.nodes.find((one) => one.id === found?.node);
-  return node?.inputs.find(({ name }) => name === found?.input)?.unit;
+  if (found?.kind !== 'measured') return undefined;
+  const node = site.nodes.find((one) => one.id === found.node);
+  return node?.inputs.find(({ name }) => name === found.input)?.unit;
 };
 
 /** The site file as docs/site.schema.json describes it. The texts to change are of checked sites. */

@@ -19,13 +19,17 @@ interface Basis {
 }
 
 const STRAINS: readonly Measurand[] = ['strain', 'shear'];
+const STRESSES: readonly Measurand[] = [...STRAINS, 'stress'];
 
 /** What each basis of the file is inside, its unit in SI, and what it can limit. */
 const BASES = {
-  share_of_yield: { basis: 'share', si: 1, measurands: STRAINS },
-  stress_MPa: { basis: 'stress', si: 1e6, measurands: STRAINS },
+  share_of_yield: { basis: 'share', si: 1, measurands: STRESSES },
+  stress_MPa: { basis: 'stress', si: 1e6, measurands: STRESSES },
   strain_microstrain: { basis: 'strain', si: 1e-6, measurands: STRAINS },
   force_kN: { basis: 'value', si: 1e3, measurands: ['force'] },
+  moment_kN_m: { basis: 'value', si: 1e3, measurands: ['moment'] },
+  angle_degree: { basis: 'value', si: Math.PI / 180, measurands: ['angle'] },
+  number: { basis: 'value', si: 1, measurands: ['number'] },
   displacement_mm: { basis: 'value', si: 1e-3, measurands: ['displacement'] },
   temperature_Cel: { basis: 'value', si: 1, measurands: ['temperature'] },
 } as const satisfies Record<string, Basis>;

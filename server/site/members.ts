@@ -15,6 +15,7 @@ import {
 } from '../../shared/model/units.ts';
 import { readChannel, type SiteContext } from './channels.ts';
 import type { Reading } from './reading.ts';
+import { readVirtual } from './virtual.ts';
 
 interface SectionOfFile {
   readonly name: string;
@@ -103,8 +104,9 @@ const readStation = (
   at: string,
   length: Metre | null,
   channelAt: (pointer: string) => Station['channels'],
+  virtualAt: (pointer: string) => () => Station['channels'],
   site: SiteContext,
-): Station[] => {
+): (() => Station[]) => {
   site.stations.add(`${at}/id`, true);
   const id = reading.value<string>(`${at}/id`);
   const place = reading.value<number>(`${at}/at_m`);
@@ -113,17 +115,24 @@ const readStation = (
     reading.faultAt(`${at}/at_m`, `at most ${metres} m, the length of the member`);
   }
   if (!reading.isList(`${at}/channels`)) site.channels.incomplete();
-  const channels = reading.items(`${at}/channels`).flatMap(channelAt);
-  return id === undefined || place === undefined ? [] : [{ id, at: metre(place), channels }];
+  const measured = reading.items(`${at}/channels`).flatMap(channelAt);
+  const virtual = reading.items(`${at}/virtual`).map(virtualAt);
+  return () => {
+    const channels = [...measured, ...virtual.flatMap((finish) => finish())];
+    return id === undefined || place === undefined ? [] : [{ id, at: metre(place), channels }];
+  };
 };
 
-/** A member of the structure at `structure`; none where something is at fault. */
+/**
+ * A member of the structure at `structure`, to be finished when every channel is known; none where
+ * something is at fault.
+ */
 export const readMember = (
   reading: Reading,
   at: string,
   structure: string,
   site: SiteContext,
-): Member[] => {
+): (() => Member[]) => {
   site.members.add(`${at}/id`, { structure });
   const section = readSection(reading, `${at}/section`);
   const material = readMaterial(reading, at, section);
@@ -132,11 +141,15 @@ export const readMember = (
   if (length === 0) reading.fault(`${at}/to_m`, 'another point than from_m', 'the same');
   if (!reading.isList(`${at}/stations`)) site.channels.incomplete();
   const channelAt = (pointer: string) => readChannel(reading, pointer, structure, material, site);
-  const stations = reading
+  const virtualAt = (pointer: string) => readVirtual(reading, pointer, structure, material, site);
+  const finishing = reading
     .items(`${at}/stations`)
-    .flatMap((pointer) => readStation(reading, pointer, length, channelAt, site));
-  const id = reading.value<string>(`${at}/id`);
-  const name = reading.value<string>(`${at}/name`);
-  if (id === undefined || name === undefined || !section || !material || !from || !to) return [];
-  return [{ id, name, section, material, from, to, stations }];
+    .map((pointer) => readStation(reading, pointer, length, channelAt, virtualAt, site));
+  return () => {
+    const stations = finishing.flatMap((finish) => finish());
+    const id = reading.value<string>(`${at}/id`);
+    const name = reading.value<string>(`${at}/name`);
+    if (id === undefined || name === undefined || !section || !material || !from || !to) return [];
+    return [{ id, name, section, material, from, to, stations }];
+  };
 };

@@ -74,6 +74,10 @@ const TRANSDUCERS = {
 
 type TransducerMeasurand = keyof typeof TRANSDUCERS;
 
+/** The others are not measured: the schema lets none through. */
+const isTransducer = (measurand: Measurand): measurand is TransducerMeasurand =>
+  Object.hasOwn(TRANSDUCERS, measurand);
+
 const SIGNAL_SI = { 'mV/V': 1e-3, V: 1, count: 1 } as const;
 
 const leadsOf = (file: LeadsOfFile): Leads => {
@@ -216,6 +220,7 @@ export const readResponse = (
     reading.faultAt(`${at}/kind`, `"bridge" for ${measurand}`);
     return null;
   }
+  if (!isTransducer(measurand)) return null;
   if (kind === 'linear') return readLinear(reading, at, measurand, context);
   if (kind === 'as-is') return readAsIs(reading, at, measurand, context);
   reading.faultAt(`${at}/kind`, `"linear" or "as-is" for ${measurand}`);

@@ -66,10 +66,11 @@ const readStructure = (
     site.members.incomplete();
     site.channels.incomplete();
   }
-  const members = reading
+  const finishing = reading
     .items(`${at}/members`)
-    .flatMap((pointer) => readMember(reading, pointer, at, site));
+    .map((pointer) => readMember(reading, pointer, at, site));
   return () => {
+    const members = finishing.flatMap((finish) => finish());
     const names = new Names(reading, 'elevation of the structure');
     const elevations = reading
       .items(`${at}/elevations`)

@@ -18,3 +18,33 @@ export const strainFactors = (angle: number): Triple => {
   const [c, s] = [Math.cos(angle), Math.sin(angle)];
   return [c * c, s * s, s * c];
 };
+
+/** m/m; shear strains are engineering shear strains γ. */
+export const ROSETTE_STRAINS = [
+  'strain-x',
+  'strain-y',
+  'shear-strain-xy',
+  'principal-strain-1',
+  'principal-strain-2',
+  'principal-strain-3',
+  'shear-strain-in-plane',
+  'shear-strain-absolute',
+] as const;
+
+/** Pa. */
+export const ROSETTE_STRESSES = [
+  'stress-x',
+  'stress-y',
+  'shear-stress-xy',
+  'principal-stress-1',
+  'principal-stress-2',
+  'shear-stress-in-plane',
+  'shear-stress-absolute',
+  'equivalent-stress',
+] as const;
+
+export type RosetteStrain = (typeof ROSETTE_STRAINS)[number];
+export type RosetteStress = (typeof ROSETTE_STRESSES)[number];
+/** `angle`: from gauge a to the greater principal strain, rad, NaN where it is undefined. */
+export const ROSETTE_QUANTITIES = [...ROSETTE_STRAINS, ...ROSETTE_STRESSES, 'angle'] as const;
+export type RosetteQuantity = (typeof ROSETTE_QUANTITIES)[number];

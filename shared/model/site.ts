@@ -10,6 +10,7 @@ import type {
   Share,
   SquareMetre,
 } from './units.ts';
+import type { Definition } from './virtual.ts';
 
 /** A cross-section; axes as EN 1993-1-1 §1.7: y–y strong, z–z weak. */
 export interface Section {
@@ -37,22 +38,59 @@ export interface Material {
   readonly yieldStrength: Pascal;
 }
 
-/** What a channel reports, and in which SI unit: m/m, m/m, N, m, °C. */
-export type Measurand = 'strain' | 'shear' | 'force' | 'displacement' | 'temperature';
+/** What a channel reports. */
+export const MEASURANDS = [
+  'strain',
+  'shear',
+  'force',
+  'displacement',
+  'temperature',
+  'stress',
+  'moment',
+  'angle',
+  'number',
+] as const;
+export type Measurand = (typeof MEASURANDS)[number];
 
-export interface Channel {
+/** The SI unit of each. */
+export const MEASURAND_UNITS = {
+  strain: 'm/m',
+  shear: 'm/m',
+  force: 'N',
+  displacement: 'm',
+  temperature: 'Cel',
+  stress: 'Pa',
+  moment: 'N m',
+  angle: 'rad',
+  number: '1',
+} as const satisfies Readonly<Record<Measurand, string>>;
+
+interface ChannelHead {
   /** Unique in the site. */
   readonly id: string;
   readonly name: string;
   readonly measurand: Measurand;
+  readonly limits: readonly Limit[];
+}
+
+/** Read from an input of a node by its calibration records. */
+export interface MeasuredChannel extends ChannelHead {
+  readonly kind: 'measured';
   readonly node: string;
   readonly input: string;
   /** In the order in which they were added; at least one. */
   readonly calibration: readonly CalibrationRecord[];
   /** In the order in which they were added. */
   readonly zeros: readonly ZeroRecord[];
-  readonly limits: readonly Limit[];
 }
+
+/** Comes from other channels, and is in all else a channel as others. */
+export interface VirtualChannel extends ChannelHead {
+  readonly kind: 'virtual';
+  readonly definition: Definition;
+}
+
+export type Channel = MeasuredChannel | VirtualChannel;
 
 export interface Station {
   readonly id: string;
@@ -121,7 +159,7 @@ export interface Site {
   readonly nodes: readonly FieldNode[];
 }
 
-/** Channels in site order: by structure, member, station, as the file lists them. */
+/** Channels in site order: by structure, member, station, there measured ones before virtual ones. */
 export const channelsOf = (site: Site): { channel: Channel; member: Member; station: Station }[] =>
   site.structures.flatMap(({ members }) =>
     members.flatMap((member) =>
@@ -129,4 +167,11 @@ export const channelsOf = (site: Site): { channel: Channel; member: Member; stat
         station.channels.map((channel) => ({ channel, member, station })),
       ),
     ),
+  );
+
+export const measuredOf = (
+  site: Site,
+): { channel: MeasuredChannel; member: Member; station: Station }[] =>
+  channelsOf(site).flatMap(({ channel, ...place }) =>
+    channel.kind === 'measured' ? [{ channel, ...place }] : [],
   );

@@ -56,6 +56,8 @@ export const strainToMicrostrain = (e: Strain): number => e * 1e6;
 export const megapascalToPascal = (n: number) => pascal(n * 1e6);
 export const pascalToMegapascal = (p: Pascal): number => p / 1e6;
 export const gigapascalToPascal = (n: number) => pascal(n * 1e9);
+export const kilonewtonMetreToNewtonMetre = (n: number) => newtonMetre(n * 1e3);
+export const newtonMetreToKilonewtonMetre = (m: NewtonMetre): number => m / 1e3;
 export const kilonewtonToNewton = (n: number) => newton(n * 1e3);
 export const newtonToKilonewton = (n: Newton): number => n / 1e3;
 export const millimetreToMetre = (n: number) => metre(n / 1e3);
@@ -74,6 +76,10 @@ const METRE_PER_INCH = 0.0254;
 export const inchToMetre = (n: number) => metre(n * METRE_PER_INCH);
 export const metreToInch = (m: Metre): number => m / METRE_PER_INCH;
 export const newtonToKip = (n: Newton): number => n / (1e3 * NEWTON_PER_POUND_FORCE);
+export const newtonMetreToKipFoot = (m: NewtonMetre): number =>
+  m / (1e3 * NEWTON_PER_POUND_FORCE * 12 * METRE_PER_INCH);
+export const kipFootToNewtonMetre = (n: number) =>
+  newtonMetre(n * 1e3 * NEWTON_PER_POUND_FORCE * 12 * METRE_PER_INCH);
 export const kipToNewton = (n: number) => newton(n * 1e3 * NEWTON_PER_POUND_FORCE);
 export const ksiToPascal = (n: number) =>
   pascal((n * 1e3 * NEWTON_PER_POUND_FORCE) / METRE_PER_INCH ** 2);

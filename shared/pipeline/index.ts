@@ -1,115 +1,16 @@
 /** The way of a frame, in the order the data meets it: decode → ratio → strain → stress → alarm. */
 import type { ChannelBlock, Quality } from '../model/block.ts';
-import type { BridgeResponse, ZeroRecord } from '../model/calibration.ts';
-import { apply, compose, type FractionalLinear } from '../model/fractional-linear.ts';
+import { compose } from '../model/fractional-linear.ts';
 import { sampleCount, type Frame, type InputBlock } from '../model/frame.ts';
-import { inForce, type InForce } from '../model/in-force.ts';
-import type { LimitContext } from '../model/limit.ts';
-import { channelsOf, type Channel, type Member, type Site } from '../model/site.ts';
-import { ratio, type Celsius } from '../model/units.ts';
-import { excitationInput, signalMap } from './2-ratio/signal.ts';
-import { bridgeStrain, linearValue } from './3-strain/bridge.ts';
-import { thermalMap } from './3-strain/thermal-output.ts';
-import { stressPerStrain, yieldFor } from './4-stress/stress.ts';
-import { convert, convertOver, type Range, type Stretch } from './convert.ts';
+import type { Celsius } from '../model/units.ts';
+import { convert, convertOver, type Stretch } from './convert.ts';
+import type { ChannelPlan, Conversion, SitePlan } from './plan.ts';
 
-/** Records made ready: raw figure (over excitation, if measured) → channel's SI value. */
-export interface Conversion extends InForce {
-  readonly excitation: string | null;
-  /** As if at the temperature of the zero state. */
-  readonly map: FractionalLinear;
-  /** null: not put right for temperature. */
-  readonly correction: Correction | null;
-}
-
-interface Correction {
-  /** Id of the channel whose temperature it is. */
-  readonly channel: string;
-  readonly at: (temperature: Celsius) => FractionalLinear;
-}
+export * from './plan.ts';
+export { VirtualStream } from './virtual-stream.ts';
 
 /** A channel's temperature at time `t` (s), °C; null where it is not known. */
 export type TemperatureAt = (channel: string, t: number) => Celsius | null;
-
-/** A channel with all that is worked out once for it. */
-export interface ChannelPlan {
-  /** Place among the site's channels, in site order. */
-  readonly index: number;
-  readonly channel: Channel;
-  readonly member: Member;
-  readonly context: LimitContext;
-  readonly conversions: readonly Conversion[];
-  readonly range: Range;
-  readonly excitationRange: (input: string) => Range;
-}
-
-export interface SitePlan {
-  readonly channels: readonly ChannelPlan[];
-  /** Channels that read an input, by node and input. */
-  readonly readers: ReadonlyMap<string, ReadonlyMap<string, readonly ChannelPlan[]>>;
-}
-
-export const conversionOf = (governing: InForce): Conversion => {
-  const { record, zero } = governing;
-  const { signal, response } = record;
-  const toSignal = signalMap(signal);
-  const own = zero === null ? response.zero : apply(toSignal, zero.raw);
-  const toValue =
-    response.kind === 'bridge'
-      ? bridgeStrain({ ...response, zero: ratio(own) })
-      : linearValue({ ...response, zero: own });
-  const correction = response.kind === 'bridge' ? correctionOf(response, zero) : null;
-  return {
-    ...governing,
-    excitation: excitationInput(signal),
-    map: compose(toSignal, toValue),
-    correction,
-  };
-};
-
-const correctionOf = (response: BridgeResponse, zero: ZeroRecord | null): Correction | null => {
-  const { temperature, gaugeFactor } = response;
-  if (!temperature) return null;
-  const zeroAt = zero?.temperature ?? temperature.zeroAt;
-  const gauge = { ...temperature, gaugeFactor };
-  return {
-    channel: temperature.channel,
-    at: (t) => thermalMap(gauge, gaugeFactor, zeroAt, t),
-  };
-};
-
-export const conversionsOf = ({ calibration, zeros }: Channel): readonly Conversion[] =>
-  inForce(calibration, zeros).map(conversionOf);
-
-export const limitContextOf = (channel: Channel, member: Member, site: Site): LimitContext => ({
-  measurand: channel.measurand,
-  stressPerStrain: stressPerStrain(channel.measurand, member.material),
-  yieldStrength: yieldFor(channel.measurand, member.material),
-  highestLimit: site.highestLimit,
-});
-
-export const planSite = (site: Site): SitePlan => {
-  const ranges = new Map(
-    site.nodes.map((node) => [node.id, new Map(node.inputs.map((i) => [i.name, i.range]))]),
-  );
-  const rangeOf = (node: string, input: string): Range => ranges.get(node)?.get(input) ?? null;
-  const channels = channelsOf(site).map(({ channel, member }, index): ChannelPlan => ({
-    index,
-    channel,
-    member,
-    context: limitContextOf(channel, member, site),
-    conversions: conversionsOf(channel),
-    range: rangeOf(channel.node, channel.input),
-    excitationRange: (input) => rangeOf(channel.node, input),
-  }));
-  const readers = new Map<string, Map<string, ChannelPlan[]>>();
-  for (const plan of channels) {
-    const inputs = readers.get(plan.channel.node) ?? new Map<string, ChannelPlan[]>();
-    readers.set(plan.channel.node, inputs);
-    inputs.set(plan.channel.input, [...(inputs.get(plan.channel.input) ?? []), plan]);
-  }
-  return { channels, readers };
-};
 
 /** Place of the conversion in force at time `t` (s); −1 before the first. */
 export const conversionAt = (conversions: readonly Conversion[], t: number): number =>

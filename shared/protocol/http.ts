@@ -2,7 +2,7 @@
 import type { Fault } from '../model/fault.ts';
 import type { AlarmEvent, Limit } from '../model/limit.ts';
 import type { Quality } from '../model/block.ts';
-import type { Measurand } from '../model/site.ts';
+import type { Measurand, MEASURAND_UNITS } from '../model/site.ts';
 
 export interface Health {
   readonly ok: boolean;
@@ -30,9 +30,10 @@ export interface ChannelReport {
   readonly station: string;
   readonly measurand: Measurand;
   /** SI unit of its figures. */
-  readonly unit: 'm/m' | 'N' | 'm' | 'Cel';
-  readonly node: string;
-  readonly input: string;
+  readonly unit: (typeof MEASURAND_UNITS)[Measurand];
+  /** null: virtual. */
+  readonly node: string | null;
+  readonly input: string | null;
   readonly limits: readonly Limit[];
   readonly current: CurrentValue;
 }
@@ -59,6 +60,8 @@ export interface History {
   readonly from: number;
   readonly to: number;
   readonly step: number;
+  /** means: of a virtual channel over a long window, worked out of the means of its sources. */
+  readonly derived: 'samples' | 'means';
   readonly t: readonly number[];
   readonly min: readonly (number | null)[];
   readonly mean: readonly (number | null)[];

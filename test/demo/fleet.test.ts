@@ -12,6 +12,7 @@ import { nodeClient } from '../contracts/frame-source.ts';
 import { fakeClock } from '../helpers/fakes.ts';
 import { printed, startProcess } from '../helpers/process.ts';
 import { demoSite, SITE_FILE } from './site.ts';
+import { compileExpression } from '../../server/site/expression.ts';
 
 let site: Site;
 beforeAll(async () => {
@@ -67,7 +68,7 @@ describe('the fleet of simulated nodes, on the server’s own broker', () => {
     await until(() => nodes.every((id) => frames(id).length > 0 && statuses(id).length > 0));
     for (const id of nodes) expect(statuses(id)).toEqual([true]);
 
-    const plan = planSite(site);
+    const plan = planSite(site, compileExpression);
     // The yard node sends each of its two readings as a frame of its own.
     const first = nodes.flatMap((id) => frames(id).slice(0, 2));
     const blocks = first.flatMap((frame) => channelBlocks(frame, plan, () => null));

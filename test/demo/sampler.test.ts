@@ -11,6 +11,7 @@ import type { Site } from '../../shared/model/site.ts';
 import { epochSeconds, seconds } from '../../shared/model/units.ts';
 import { channelBlocks, planSite, type SitePlan } from '../../shared/pipeline/index.ts';
 import { demoSite } from './site.ts';
+import { compileExpression } from '../../server/site/expression.ts';
 
 /** After the last calibration of the demo's site; whole programmes and quiet steel from here. */
 const BEGIN = epochSeconds(1_800_000_000);
@@ -20,7 +21,7 @@ let site: Site;
 let plan: SitePlan;
 beforeAll(async () => {
   site = await demoSite();
-  plan = planSite(site);
+  plan = planSite(site, compileExpression);
 });
 
 const samplers = (seed = 1): ReadonlyMap<string, Sampler> =>

@@ -3,7 +3,7 @@ import type { Core, SetUpDesk } from '../../server/ports.ts';
 import type { CalibrationRecord, Leads, Signal } from '../../shared/model/calibration.ts';
 import { accept } from '../../shared/model/frame.ts';
 import type { AlarmEvent, Limit } from '../../shared/model/limit.ts';
-import type { Channel, Measurand, Site } from '../../shared/model/site.ts';
+import type { Measurand, MeasuredChannel, Site } from '../../shared/model/site.ts';
 import {
   cubicMetre,
   epochSeconds,
@@ -53,7 +53,8 @@ const channel = (
   signal: Signal,
   response: CalibrationRecord['response'],
   limits: readonly Limit[] = [],
-): Channel => ({
+): MeasuredChannel => ({
+  kind: 'measured',
   ...{ id, name: `Channel ${id}`, measurand, node: 'n1', input: id },
   ...{ calibration: [record(signal, response)], zeros: [], limits },
 });
@@ -70,7 +71,7 @@ const leads = (kind: 'three-wire' | 'excitation'): Leads => ({ kind, resistance:
 const stated = { kind: 'stated', volts: volt(5) } as const;
 const measured = { kind: 'measured', input: 'ex' } as const;
 
-const CHANNELS: readonly Channel[] = [
+const CHANNELS: readonly MeasuredChannel[] = [
   channel('ratio', 'strain', { kind: 'ratio' }, bridge(leads('three-wire')), [CAUTION]),
   channel(
     'volts',
@@ -215,7 +216,7 @@ export const plainCore = (over: Partial<Core> = {}): Core => {
     }),
     history: async (channel, from, to) =>
       accept({
-        ...{ channel, simulated: true, from, to, step: 0.5 },
+        ...{ channel, simulated: true, from, to, step: 0.5, derived: 'samples' },
         t: [from, from + 0.5, from + 1.0005],
         min: [1.1e-6, null, -3e-4],
         mean: [1.2e-6, null, 0],

@@ -58,7 +58,7 @@ test.each(units)('channel %s is in %s', async (channel, unit, factor) => {
 });
 
 const history: History = {
-  ...{ channel: 'c', simulated: false, from: 0, to: 10, step: 1 },
+  ...{ channel: 'c', simulated: false, from: 0, to: 10, step: 1, derived: 'samples' },
   ...{ t: [], min: [], mean: [], max: [] },
 };
 

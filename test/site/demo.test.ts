@@ -1,7 +1,7 @@
 import { fileURLToPath } from 'node:url';
 import { describe, expect, test } from 'vitest';
 import { loadSite } from '../../server/site/load.ts';
-import { channelsOf } from '../../shared/model/site.ts';
+import { measuredOf } from '../../shared/model/site.ts';
 import { limitContextOf } from '../../shared/pipeline/index.ts';
 import { thresholdOf } from '../../shared/pipeline/5-alarm/threshold.ts';
 import { demoFile, demo, pointersIn } from './edit.ts';
@@ -10,7 +10,7 @@ const read = await loadSite(fileURLToPath(demoFile));
 if (!read.ok) throw new Error(JSON.stringify(read.faults, null, 2));
 const { site } = read;
 const [lift] = site.structures;
-const channels = channelsOf(site);
+const channels = measuredOf(site);
 const channelOf = (id: string) => {
   const found = channels.find(({ channel }) => channel.id === id);
   if (!found) throw new Error(`no channel ${id}`);

@@ -1,6 +1,6 @@
 import { describe, expect, test } from 'vitest';
 import { readSite } from '../../server/site/read.ts';
-import { channelsOf, type Site } from '../../shared/model/site.ts';
+import { measuredOf, type Site } from '../../shared/model/site.ts';
 import { demoWith, placeOf } from './edit.ts';
 
 const siteWith = (changes: Readonly<Record<string, unknown>>): Site => {
@@ -9,7 +9,7 @@ const siteWith = (changes: Readonly<Record<string, unknown>>): Site => {
   return read.site;
 };
 const channelWith = (id: string, changes: Readonly<Record<string, unknown>> = {}) => {
-  const found = channelsOf(siteWith(changes)).find(({ channel }) => channel.id === id);
+  const found = measuredOf(siteWith(changes)).find(({ channel }) => channel.id === id);
   if (!found) throw new Error(`no channel ${id}`);
   return found;
 };

@@ -64,6 +64,7 @@ const history: History = {
   simulated: true,
   from: NOON,
   to: NOON + 3,
+  derived: 'samples',
   step: 1,
   t: [NOON, NOON + 1, NOON + 2],
   min: [512.4e-6, null, 748.8e-6],

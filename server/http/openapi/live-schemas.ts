@@ -1,3 +1,4 @@
+import { MEASURAND_UNITS, MEASURANDS } from '../../../shared/model/site.ts';
 import { QUALITIES } from '../../../shared/model/block.ts';
 import { LIMIT_BASES, LIMIT_LEVELS } from '../../../shared/protocol/parse.ts';
 import {
@@ -81,9 +82,9 @@ export const LIVE_SCHEMAS: Readonly<Record<string, Schema>> = {
     member: text('Id of its member'),
     station: text('Id of its station'),
     measurand: ref('Measurand'),
-    unit: word('SI unit of its figures', 'm/m', 'N', 'm', 'Cel'),
-    node: text('Id of the node that measures it'),
-    input: text('Name of the input on that node'),
+    unit: word('SI unit of its figures', ...new Set(Object.values(MEASURAND_UNITS))),
+    node: orNull(text('Id of the node that measures it'), 'null: virtual'),
+    input: orNull(text('Name of the input on that node'), 'null: virtual'),
     limits: list(ref('Limit'), 'In force now'),
     current: ref('CurrentValue'),
   }),
@@ -98,6 +99,11 @@ export const LIVE_SCHEMAS: Readonly<Record<string, Schema>> = {
     from: time('Begin of the window'),
     to: time('End of the window, not included'),
     step: { ...figure('Width of a point, s'), exclusiveMinimum: 0 },
+    derived: word(
+      'means: of a virtual channel over a long window, worked out of the means of its sources',
+      'samples',
+      'means',
+    ),
     t: list(time('Begin of a point')),
     min: column(`Lowest sample, ${SI}`),
     mean: column(`Mean of the samples, ${SI}`),
@@ -146,6 +152,6 @@ export const LIVE_SCHEMAS: Readonly<Record<string, Schema>> = {
     unassigned: list(text('An input'), 'Inputs that came but belong to no channel'),
   }),
   TallyAnswer: map('Frames of every node', { simulated: SIMULATED, nodes: list(ref('NodeTally')) }),
-  Measurand: word('What is measured', 'strain', 'shear', 'force', 'displacement', 'temperature'),
+  Measurand: word('What is measured', ...MEASURANDS),
   OpenApi: { type: 'object', required: ['openapi', 'info', 'paths'] },
 };

@@ -1,4 +1,6 @@
 import { HEAT_SINKS } from '../../../shared/model/calibration.ts';
+import { ROSETTE_LAYOUTS, ROSETTE_QUANTITIES } from '../../../shared/model/rosette.ts';
+import { SECTION_QUANTITIES } from '../../../shared/model/virtual.ts';
 import {
   exactly,
   figure,
@@ -28,6 +30,13 @@ const counts = (as: string, extra: Readonly<Record<string, Schema>> = {}): Schem
     zeroCount: figure('The count at nought'),
     ...extra,
   });
+
+const CHANNEL_HEAD = {
+  id: text('Unique in the site'),
+  name: text('As people say it'),
+  measurand: ref('Measurand'),
+  limits: list(ref('Limit'), 'As the set-up has them; /api/channels has those in force'),
+};
 
 const RECORD_HEAD = {
   id: text('Unique in the site'),
@@ -95,16 +104,45 @@ export const SITE_SCHEMAS: Readonly<Record<string, Schema>> = {
     at: figure('Distance from the start of the member, m'),
     channels: list(ref('Channel')),
   }),
-  Channel: map('What is measured at a station', {
-    id: text('Unique in the site'),
-    name: text('As people say it'),
-    measurand: ref('Measurand'),
-    node: text('Id of the node that measures it'),
-    input: text('Name of the input on that node'),
-    calibration: { ...list(ref('CalibrationRecord'), 'In the order added'), minItems: 1 },
-    zeros: list(ref('ZeroRecord'), 'In the order added'),
-    limits: list(ref('Limit'), 'As the site file has them; /api/channels has those in force'),
-  }),
+  Channel: oneOf(
+    'What is known at a station',
+    map('Measured', {
+      ...CHANNEL_HEAD,
+      kind: exactly('measured'),
+      node: text('Id of the node that measures it'),
+      input: text('Name of the input on that node'),
+      calibration: { ...list(ref('CalibrationRecord'), 'In the order added'), minItems: 1 },
+      zeros: list(ref('ZeroRecord'), 'In the order added'),
+    }),
+    map('Virtual', { ...CHANNEL_HEAD, kind: exactly('virtual'), definition: ref('Definition') }),
+  ),
+  Definition: oneOf(
+    'How a virtual channel comes from others',
+    map('Of a rosette; ASTM E1561', {
+      kind: exactly('rosette'),
+      layout: word('0/45/90 or 0/60/120 degrees', ...ROSETTE_LAYOUTS),
+      gauges: list(text('Id'), 'Channels a, b, c, counter-clockwise'),
+      quantity: word('What of it', ...ROSETTE_QUANTITIES),
+    }),
+    map('Of the gauges of a section', {
+      kind: exactly('section'),
+      gauges: list(
+        map('A gauge', { channel: text('Id'), y: figure('To the side, m'), z: figure('Up, m') }),
+      ),
+      quantity: word('What of it', ...SECTION_QUANTITIES),
+    }),
+    map('Mean', { kind: exactly('mean'), of: list(text('Id')) }),
+    map('The first less the second', { kind: exactly('difference'), of: list(text('Id')) }),
+    map('Arithmetic over channels in SI units', {
+      kind: exactly('expression'),
+      text: text('The expression'),
+      names: {
+        type: 'object',
+        description: 'Ids by the names that stand for them',
+        additionalProperties: { type: 'string' },
+      },
+    }),
+  ),
   CalibrationRecord: map('In force until the next of its channel', {
     ...RECORD_HEAD,
     signal: ref('Signal'),

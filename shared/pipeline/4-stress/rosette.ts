@@ -1,5 +1,10 @@
 import { multiply, type Matrix3 } from '../../model/matrix3.ts';
-import type { RosetteLayout } from '../../model/rosette.ts';
+import type {
+  RosetteLayout,
+  RosetteQuantity,
+  RosetteStrain,
+  RosetteStress,
+} from '../../model/rosette.ts';
 import type { Material } from '../../model/site.ts';
 import {
   pascal,
@@ -63,35 +68,6 @@ export const planRosette = (
     law: planeLaw(material),
   };
 };
-
-/** m/m; shear strains are engineering shear strains γ. */
-export const ROSETTE_STRAINS = [
-  'strain-x',
-  'strain-y',
-  'shear-strain-xy',
-  'principal-strain-1',
-  'principal-strain-2',
-  'principal-strain-3',
-  'shear-strain-in-plane',
-  'shear-strain-absolute',
-] as const;
-
-/** Pa. */
-export const ROSETTE_STRESSES = [
-  'stress-x',
-  'stress-y',
-  'shear-stress-xy',
-  'principal-stress-1',
-  'principal-stress-2',
-  'shear-stress-in-plane',
-  'shear-stress-absolute',
-  'equivalent-stress',
-] as const;
-
-export type RosetteStrain = (typeof ROSETTE_STRAINS)[number];
-export type RosetteStress = (typeof ROSETTE_STRESSES)[number];
-/** `angle`: from gauge a to the greater principal strain, rad, NaN where it is undefined. */
-export type RosetteQuantity = RosetteStrain | RosetteStress | 'angle';
 
 /** Of Mohr's circle, centre and radius, and of the components. */
 type Formula = (c: number, r: number, x: number, y: number, xy: number, law: PlaneLaw) => number;

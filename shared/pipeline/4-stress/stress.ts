@@ -6,8 +6,8 @@ export const shearModulus = ({ youngsModulus, poisson }: Material): Pascal =>
   pascal(youngsModulus / (2 * (1 + poisson)));
 
 /**
- * Stress for a strain of 1: σ = E·ε in a uniaxial field (Hooke's law), and for a
- * gauge at 45° in pure shear τ = G·γ = 2G·ε. null for what is no strain.
+ * Stress for a value of 1: σ = E·ε in a uniaxial field (Hooke's law), for a gauge at 45° in pure
+ * shear τ = G·γ = 2G·ε, and 1 for a channel that is stress already. null for all else.
  */
 export const stressPerStrain = (measurand: Measurand, material: Material): Pascal | null => {
   switch (measurand) {
@@ -15,26 +15,35 @@ export const stressPerStrain = (measurand: Measurand, material: Material): Pasca
       return material.youngsModulus;
     case 'shear':
       return pascal(2 * shearModulus(material));
+    case 'stress':
+      return pascal(1);
     case 'force':
     case 'displacement':
     case 'temperature':
+    case 'moment':
+    case 'angle':
+    case 'number':
       return null;
   }
 };
 
 /**
  * Yield in the measurand's kind of stress: fy, or fy/√3 in shear by the von Mises criterion;
- * EN 1993-1-1:2005 §6.2.1(5), §6.2.6(4). null for what is no strain.
+ * EN 1993-1-1:2005 §6.2.1(5), §6.2.6(4). null for what is neither strain nor stress.
  */
 export const yieldFor = (measurand: Measurand, material: Material): Pascal | null => {
   switch (measurand) {
     case 'strain':
+    case 'stress':
       return material.yieldStrength;
     case 'shear':
       return pascal(material.yieldStrength / Math.sqrt(3));
     case 'force':
     case 'displacement':
     case 'temperature':
+    case 'moment':
+    case 'angle':
+    case 'number':
       return null;
   }
 };

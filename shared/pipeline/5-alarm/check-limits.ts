@@ -4,8 +4,23 @@ import { thresholdOf } from './threshold.ts';
 
 const LONGEST_ON_DELAY = 3600;
 
-const basesFor = (context: LimitContext): readonly LimitBasis[] =>
-  context.stressPerStrain === null ? ['value'] : ['strain', 'stress', 'share'];
+/** What limits of a channel may be stated in. */
+export const basesFor = ({ measurand, stressPerStrain }: LimitContext): readonly LimitBasis[] => {
+  switch (measurand) {
+    case 'strain':
+    case 'shear':
+      return stressPerStrain === null ? ['strain'] : ['strain', 'stress', 'share'];
+    case 'stress':
+      return ['stress', 'share'];
+    case 'force':
+    case 'displacement':
+    case 'temperature':
+    case 'moment':
+    case 'angle':
+    case 'number':
+      return ['value'];
+  }
+};
 
 const percent = (share: number): string => `${Number((share * 100).toPrecision(4))} % of yield`;
 

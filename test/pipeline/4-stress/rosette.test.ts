@@ -1,6 +1,10 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
-import type { RosetteLayout } from '../../../shared/model/rosette.ts';
+import {
+  ROSETTE_STRAINS,
+  ROSETTE_STRESSES,
+  type RosetteLayout,
+} from '../../../shared/model/rosette.ts';
 import type { Material } from '../../../shared/model/site.ts';
 import {
   gigapascalToPascal,
@@ -12,8 +16,6 @@ import { transverseMatrix } from '../../../shared/pipeline/3-strain/transverse.t
 import {
   fillRosette,
   planRosette,
-  ROSETTE_STRAINS,
-  ROSETTE_STRESSES,
   rosetteState,
   type RosettePlan,
 } from '../../../shared/pipeline/4-stress/rosette.ts';

@@ -3,6 +3,7 @@ import { CurrentSite } from '../../../server/core/current-site.ts';
 import { firstRevision } from '../../../server/core/first-revision.ts';
 import { SetUp } from '../../../server/core/set-up.ts';
 import type { LimitChange } from '../../../server/ports.ts';
+import { compileExpression } from '../../../server/site/expression.ts';
 import { siteFormat } from '../../../server/site/format.ts';
 import { openSqliteStores } from '../../../server/store/sqlite/open.ts';
 import type { Limit } from '../../../shared/model/limit.ts';
@@ -26,7 +27,7 @@ export const setUpScene = async () => {
   const { site, revision } = await firstRevision(text, 'site.json', {
     ...{ records, clock, format: siteFormat, say: () => undefined },
   });
-  const current = new CurrentSite(site);
+  const current = new CurrentSite(site, compileExpression);
   const limits = new Map<string, readonly Limit[]>(
     channelsOf(site).map(({ channel }) => [channel.id, channel.limits]),
   );

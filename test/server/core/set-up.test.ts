@@ -58,7 +58,7 @@ test('a correction re-derives what is past, on read; the raw figures stay', asyn
   const { samples, current, setUp } = await setUpScene();
   await fill(samples);
   const past = async () => {
-    const plan = current.channels.find(({ channel }) => channel.id === TIP);
+    const plan = current.measured.find(({ channel }) => channel.id === TIP);
     if (!plan) throw new Error('no such channel');
     const [from, to] = [epochSeconds(NOW - 5400), epochSeconds(NOW - 1800)];
     return channelEnvelope({ store: samples, planOf: () => undefined }, plan, from, to, 60);

@@ -7,6 +7,7 @@ import { celsius, epochSeconds, seconds } from '../../../shared/model/units.ts';
 import { channelBlocks, planSite, type TemperatureAt } from '../../../shared/pipeline/index.ts';
 import { openStore } from '../../helpers/open-store.ts';
 import { demoWith, inDemo, placeOf } from '../../site/edit.ts';
+import { compileExpression } from '../../../server/site/expression.ts';
 
 const TIP = 'B1-mid-top-left';
 const PLACE = placeOf(TIP);
@@ -29,8 +30,8 @@ const siteWith = (response: object) => {
   return read.site;
 };
 
-const plan = planSite(siteWith({ ...RESPONSE, temperature: TEMPERATURE }));
-const tip = plan.channels.find(({ channel }) => channel.id === TIP);
+const plan = planSite(siteWith({ ...RESPONSE, temperature: TEMPERATURE }), compileExpression);
+const tip = plan.measured.find(({ channel }) => channel.id === TIP);
 if (!tip) throw new Error('no such channel');
 
 /** Quarter bridge, r = d/(4 + 2d): the output at which GF 2.1 indicates so many µε. */
@@ -66,9 +67,9 @@ test('without a temperature the value stands uncorrected, and says so', () => {
 });
 
 test('the log knows the temperature at a time, for as long as a reading holds', () => {
-  const log = new TemperatureLog(plan.channels);
+  const log = new TemperatureLog(plan.measured);
   expect(log.followed).toEqual(['steel']);
-  const index = plan.channels.findIndex(({ channel }) => channel.id === 'steel');
+  const index = plan.measured.findIndex(({ channel }) => channel.id === 'steel');
   const note = (t: number, value: number) =>
     log.accept([
       {
@@ -89,7 +90,7 @@ test('the log knows the temperature at a time, for as long as a reading holds', 
 
 test('the past is put right by the temperature of its own time', async () => {
   const samples = await openStore();
-  const steel = plan.channels.find(({ channel }) => channel.id === 'steel');
+  const steel = plan.measured.find(({ channel }) => channel.id === 'steel');
   if (!steel) throw new Error('no steel channel');
   const frames = Array.from({ length: 20 }, (_, i) => frameAt(T0 + i, 809.52381));
   // 24 °C for ten seconds, then 60 °C; the demo's steel input gives °C as they are.
@@ -106,7 +107,7 @@ test('the past is put right by the temperature of its own time', async () => {
   );
   const past = {
     store: samples,
-    planOf: (id: string) => plan.channels.find(({ channel }) => channel.id === id),
+    planOf: (id: string) => plan.measured.find(({ channel }) => channel.id === id),
   };
   const [from, to] = [epochSeconds(T0), epochSeconds(T0 + 20)];
   const { mean } = await channelEnvelope(past, tip, from, to, 20);
