@@ -19,23 +19,23 @@ math.import(
   { override: true },
 );
 
-/** How an expression reads each measurand: strain and numbers are bare. */
+/** How an expression reads each measurand: strain, angles and numbers are bare. */
 const UNIT_OF: Readonly<Record<Measurand, string | null>> = {
   strain: null,
   shear: null,
   number: null,
+  angle: null,
   force: 'N',
   displacement: 'm',
   temperature: 'K',
   stress: 'Pa',
   moment: 'N m',
-  angle: 'rad',
 };
 
 export const LONGEST_EXPRESSION = 500;
 
 const FUNCTIONS: readonly string[] = [
-  ...['abs', 'sqrt', 'sign', 'min', 'max', 'hypot', 'mean', 'sin', 'cos', 'tan', 'atan2'],
+  ...['abs', 'sqrt', 'sign', 'min', 'max', 'mean', 'sin', 'cos', 'tan', 'atan2'],
   ...['exp', 'log', 'pow'],
 ];
 const NODES: readonly string[] = [
