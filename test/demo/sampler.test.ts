@@ -87,9 +87,9 @@ describe('from the lift through each calibration and back', () => {
     },
   );
 
-  test('every channel is fed by one of the nodes', () => {
+  test('every measured channel is fed by one of the nodes', () => {
     const fed = [...samplers()].flatMap(([node, sampler]) => measure(node, sampler, 0, 1));
-    expect(new Set(fed.map(({ channel }) => channel)).size).toBe(plan.channels.length);
+    expect(new Set(fed.map(({ channel }) => channel)).size).toBe(plan.measured.length);
   });
 
   test('counts are whole and the excitation is measured', () => {

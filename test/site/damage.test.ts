@@ -5,7 +5,7 @@ import { demo, demoWith, inDemo, pointersIn } from './edit.ts';
 
 /** What a file may leave out. */
 const OPTIONAL =
-  /^\/\$schema$|^\/default_limits$|\/(range|safe_working_load_kN|load_channel|limits|thickness_mm|poisson)$/;
+  /^\/\$schema$|^\/default_limits$|\/(range|safe_working_load_kN|load_channel|limits|virtual|thickness_mm|poisson)$/;
 /** One of two: its lack is a fault of what holds it. */
 const EITHER = /^(.*\/excitation)\/(stated_V|measured_by_input)$/;
 

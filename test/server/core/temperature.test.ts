@@ -69,7 +69,7 @@ test('without a temperature the value stands uncorrected, and says so', () => {
 test('the log knows the temperature at a time, for as long as a reading holds', () => {
   const log = new TemperatureLog(plan.measured);
   expect(log.followed).toEqual(['steel']);
-  const index = plan.measured.findIndex(({ channel }) => channel.id === 'steel');
+  const index = plan.channels.findIndex(({ channel }) => channel.id === 'steel');
   const note = (t: number, value: number) =>
     log.accept([
       {
