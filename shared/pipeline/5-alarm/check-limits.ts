@@ -22,6 +22,9 @@ export const basesFor = ({ measurand, stressPerStrain }: LimitContext): readonly
   }
 };
 
+/** A limit stated as all of yield has gone through its strain and back. */
+const ROUNDING = 1e-9;
+
 const percent = (share: number): string => `${Number((share * 100).toPrecision(4))} % of yield`;
 
 const figureFaults = (limit: Limit, at: string, context: LimitContext): Fault[] => {
@@ -48,11 +51,13 @@ const yieldFault = (limit: Limit, at: string, context: LimitContext): Fault | nu
   const { stressPerStrain, yieldStrength, highestLimit } = context;
   if (stressPerStrain === null || yieldStrength === null) return null;
   const used = (thresholdOf(limit, context).raise * stressPerStrain) / yieldStrength;
-  if (used < 1 && used <= highestLimit) return null;
+  const isBelowYield = used < 1 - ROUNDING;
+  if (isBelowYield && used <= highestLimit * (1 + ROUNDING)) return null;
   return {
     path: `${at}/value`,
-    expected:
-      used >= 1 ? 'below yield' : `at most ${percent(highestLimit)}, the highest the site allows`,
+    expected: !isBelowYield
+      ? 'below yield'
+      : `at most ${percent(highestLimit)}, the highest the site allows`,
     came: percent(used),
   };
 };
