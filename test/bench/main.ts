@@ -5,6 +5,7 @@ import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { parseArgs } from 'node:util';
+import { benchDerive } from './derive.ts';
 import { jsonLine, table, type Row } from './figures.ts';
 import { benchFullRate } from './full-rate.ts';
 import { benchLatency } from './latency.ts';
@@ -31,6 +32,7 @@ const data = (name: string) => join(folder, name);
 const parts: readonly (readonly [name: string, run: () => Promise<Row[]>])[] = [
   ['whole path', () => benchWholePath(site, data('path'), 8000, 3)],
   ['latency', () => benchLatency(site, data('latency'))],
+  ['derive', () => benchDerive(site, data('derive'))],
   ['look back', () => benchLookBack(site, data('back'))],
   [`full rate, ${minutes} min`, () => benchFullRate(site, data('rate'), minutes)],
 ];
