@@ -53,6 +53,8 @@ interface Label {
   readonly y: number;
   readonly label: string;
   readonly stop: boolean;
+  /** Stop limits are named on their far side, caution limits toward zero: so they keep apart. */
+  readonly up: boolean;
 }
 
 const isFigure = (cell: Cell): cell is number => cell !== null && cell !== undefined;
@@ -174,7 +176,7 @@ export class TrendChart {
       ctx.moveTo(bbox.left, y);
       ctx.lineTo(bbox.left + bbox.width, y);
       ctx.stroke();
-      labels.push({ y, label, stop });
+      labels.push({ y, label, stop, up: stop === value >= 0 });
     }
     ctx.setLineDash([]);
     ctx.strokeStyle = look.ground;
@@ -183,7 +185,9 @@ export class TrendChart {
     labels.forEach((one, i) => {
       // Of lines that lie on each other the first one's label stands for the rest of its level.
       if (labels.slice(0, i).some((other) => this.#hides(other, one))) return;
-      const above = one.stop && one.y - bbox.top > LABEL * devicePixelRatio;
+      const room = LABEL * devicePixelRatio;
+      const fits = one.up ? one.y - bbox.top > room : bbox.top + bbox.height - one.y > room;
+      const above = one.up === fits;
       const y = one.y + (above ? -4 : 5) * devicePixelRatio;
       const inset = 6 * devicePixelRatio;
       const x = one.stop ? bbox.left + inset : bbox.left + bbox.width - inset;
