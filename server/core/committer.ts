@@ -14,7 +14,7 @@ export interface Entry {
 
 export interface CommitterPorts {
   readonly samples: SampleStore;
-  readonly records: RecordStore;
+  readonly records: Pick<RecordStore, 'addAlarmEvents'>;
   readonly clock: Clock;
   /** Told of every change: null when writing works, else why it does not. */
   readonly health: (trouble: string | null) => void;
