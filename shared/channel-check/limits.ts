@@ -18,6 +18,8 @@ export interface CheckLimits {
   readonly driftAfter: number;
   /** Ohm to ground. */
   readonly insulation: Band;
+  /** Magnitude of the step shown over that which must be shown, less 1. */
+  readonly shunt: Band;
   /** Share of the input's span between the samples and its nearer end. */
   readonly range: Band;
 }
@@ -35,6 +37,7 @@ const ANY: CheckLimits = {
   drift: null,
   driftAfter: 60,
   insulation: { good: 100e6, bad: 10e6 },
+  shunt: { good: 0.01, bad: 0.03 },
   range: { good: 0.2, bad: 0.05 },
 };
 

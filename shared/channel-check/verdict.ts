@@ -1,18 +1,22 @@
 /** How a channel stands by one check, before anybody loads anything. */
 export type Verdict = 'pass' | 'doubtful' | 'fail' | 'not-judged';
 
-export type CheckKind =
-  | 'alive'
-  | 'frozen'
-  | 'noise'
-  | 'mains-50'
-  | 'mains-60'
-  | 'offset'
-  | 'drift'
-  | 'sign'
-  | 'insulation'
-  | 'self-heating'
-  | 'range';
+/** Of a channel, in the order of a first look. */
+export const CHECK_KINDS = [
+  'alive',
+  'frozen',
+  'range',
+  'offset',
+  'noise',
+  'mains-50',
+  'mains-60',
+  'drift',
+  'sign',
+  'shunt',
+  'insulation',
+  'self-heating',
+] as const;
+export type CheckKind = (typeof CHECK_KINDS)[number];
 
 /** SI units of what channels report. */
 export type ValueUnit = 'm/m' | 'N' | 'm' | 'Cel';
