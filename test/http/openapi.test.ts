@@ -1,3 +1,4 @@
+import { Validator } from '@seriousme/openapi-schema-validator';
 import { expect, test } from 'vitest';
 import { openApi } from '../../server/http/openapi/document.ts';
 import { EXAMPLES } from '../../server/http/openapi/examples.ts';
@@ -27,6 +28,23 @@ const everyReference = (value: unknown): string[] => {
     key === '$ref' ? [String(inner)] : everyReference(inner),
   );
 };
+
+// The OpenAPI Initiative's own schema of 3.1 documents, as the validator carries it.
+test('the served document is one by the OpenAPI 3.1 schema, and a spoilt one is not', async () => {
+  const { ask } = await serve();
+  const served = (await ask('/api/openapi.json')).json() as Record<string, unknown>;
+  const validator = new Validator();
+  expect(await validator.validate(served)).toEqual({ valid: true });
+  expect(validator.version).toBe('3.1');
+  const { info, paths } = served as { info: object; paths: Record<string, object> };
+  const spoilt = [
+    { ...served, info: { ...info, title: undefined } },
+    { ...served, servers: [{ address: '/' }] },
+    { ...served, paths: { ...paths, 'api/health': {} } },
+    { ...served, paths: { ...paths, '/api/health': { get: { responses: { 200: {} } } } } },
+  ].map((one) => JSON.parse(JSON.stringify(one)) as Record<string, unknown>);
+  for (const one of spoilt) expect((await new Validator().validate(one)).valid).toBe(false);
+});
 
 // OpenAPI Specification 3.1.0, the sections named at each line.
 test('the document has what OpenAPI 3.1.0 requires', () => {
