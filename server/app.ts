@@ -7,6 +7,7 @@ import { systemClock } from './clock.ts';
 import type { Config } from './config.ts';
 import { AlarmKeeper } from './core/alarms.ts';
 import { createBroadcast } from './core/broadcast.ts';
+import { ChannelChecks } from './core/channel-checks.ts';
 import { Committer } from './core/committer.ts';
 import { createCore } from './core/core.ts';
 import { CurrentSite } from './core/current-site.ts';
@@ -26,7 +27,7 @@ import { createDecode } from './ingest/decode.ts';
 import { embeddedBroker } from './ingest/embedded-broker.ts';
 import { externalBroker } from './ingest/external-broker.ts';
 import { packageFile } from './package-root.ts';
-import type { FrameSource, RecordStore, SampleStore, SiteRevision } from './ports.ts';
+import type { FrameSource, NodeCommands, RecordStore, SampleStore, SiteRevision } from './ports.ts';
 import { createPush } from './push/push.ts';
 import { compileExpression } from './site/expression.ts';
 import { siteFormat } from './site/format.ts';
@@ -140,7 +141,7 @@ const startOn = async (
   });
 
   const { host, port, mqttPort, broker } = config;
-  const source: FrameSource =
+  const source: FrameSource & NodeCommands =
     broker === null
       ? embeddedBroker({ host, port: mqttPort, clock, say })
       : externalBroker({ url: broker, clientId: `yieldward-${site.id}`, clock, say });
@@ -176,8 +177,11 @@ const startOn = async (
     ...{ plan: current, samples, records, tally, alarms, present, clock, health, limits },
     ...{ site: () => current.site, revision: () => setUp.revision, feed: broadcast.feed },
   });
+  const checks = new ChannelChecks({
+    ...{ current, samples, records, commands: source, clock, setUp, format: siteFormat },
+  });
   const app = createHttp({
-    ...{ core, setUp, metrics: createMetrics({ core, clock }), host, complain: say },
+    ...{ core, setUp, checks, metrics: createMetrics({ core, clock }), host, complain: say },
     staticFolder: packageFile('dist', 'client'),
   });
   const web = createWebServer(app);

@@ -17,6 +17,18 @@ import type {
   SetUpAnswer,
   SetUpRequest,
 } from '../shared/protocol/http.ts';
+import type {
+  ChannelChecks,
+  CheckLine,
+  CheckRecord,
+  CheckRequest,
+  ChecksAnswer,
+  EnteredRequest,
+  PushRequest,
+  ShuntRequest,
+  ZerosAnswer,
+  ZerosRequest,
+} from '../shared/protocol/checks.ts';
 import type { LiveValue, Snapshot } from '../shared/protocol/socket.ts';
 
 /** A message as a node published it. */
@@ -56,6 +68,27 @@ export interface FrameSource {
   address(): string;
   /** For people: what it is and where. */
   description(): string;
+}
+
+/** What a node may be told to do. */
+export interface NodeCommand {
+  /** Lays its own shunt across an input's bridge, or takes it off. */
+  readonly kind: 'shunt';
+  readonly input: string;
+  readonly on: boolean;
+  /** It takes the shunt off by itself after so long. */
+  readonly seconds: number;
+}
+
+export type CommandOutcome =
+  | { readonly ok: true }
+  /** `answered`: the node said no; else nothing came of it. */
+  | { readonly ok: false; readonly answered: boolean; readonly why: string };
+
+/** Commands to nodes, by the broker that their frames come from. */
+export interface NodeCommands {
+  /** Resolves when the node has acknowledged, or will no longer; never rejects. */
+  command(node: string, command: NodeCommand): Promise<CommandOutcome>;
 }
 
 export interface StoredFrame {
@@ -186,6 +219,10 @@ export interface RecordStore {
   siteRevision(): Promise<SiteRevision | null>;
   /** Newest first, without their text. */
   siteRevisions(atMost: number): Promise<readonly Omit<SiteRevision, 'text'>[]>;
+  /** All of them durable when it resolves, or none. */
+  addCheckRecords(records: readonly CheckRecord[]): Promise<void>;
+  /** The last of each channel and kind of check. */
+  lastCheckRecords(): Promise<readonly CheckRecord[]>;
   close(): Promise<void>;
 }
 
@@ -234,6 +271,29 @@ export interface SetUpDesk {
     | { readonly ok: true; readonly lines: AsyncGenerator<PreviewLine> }
     | { readonly ok: false; readonly faults: readonly Fault[] };
   change(request: SetUpRequest): Promise<SetUpOutcome>;
+}
+
+type Faulty = { readonly ok: false; readonly faults: readonly Fault[] };
+
+export type CheckLines = { readonly ok: true; readonly lines: AsyncGenerator<CheckLine> } | Faulty;
+
+/** Of zeros: `kind` as of any change of the set-up. Nothing zeroed is no change. */
+export type ZerosOutcome =
+  | { readonly kind: 'answered'; readonly answer: ZerosAnswer }
+  | Exclude<SetUpOutcome, { kind: 'changed' }>;
+
+/** Channel checks before anybody loads anything, and zeros. Whatever is judged is put on record. */
+export interface CheckDesk {
+  answer(): Promise<ChecksAnswer>;
+  /** Of the samples that have come, channel by channel. */
+  run(request: CheckRequest): CheckLines;
+  /** Watches the channel while somebody pushes. */
+  push(request: PushRequest): CheckLines;
+  shunt(request: ShuntRequest): CheckLines;
+  enter(
+    request: EnteredRequest,
+  ): Promise<{ readonly ok: true; readonly value: ChannelChecks } | Faulty>;
+  zero(request: ZerosRequest): Promise<ZerosOutcome>;
 }
 
 /** What screens and scripts may ask of the running core, and what they may change. */

@@ -7,3 +7,7 @@ export const textFaults = (path: string, text: string): Fault[] =>
   text.trim() !== '' && text.length <= LONGEST_TEXT
     ? []
     : [{ path, expected: `1 to ${LONGEST_TEXT} characters`, came: `${text.length}` }];
+
+/** A note may be left out. */
+export const noteFaults = (path: string, text: string): Fault[] =>
+  text === '' ? [] : textFaults(path, text);

@@ -1,31 +1,43 @@
 /** From what is true at a channel to the figure that its input shows. */
-import { apply, inverse, type FractionalLinear } from '../../shared/model/fractional-linear.ts';
+import {
+  apply,
+  compose,
+  inverse,
+  type FractionalLinear,
+} from '../../shared/model/fractional-linear.ts';
 import type { RawArray } from '../../shared/model/frame.ts';
 import type { NodeInput } from '../../shared/model/site.ts';
 import { volt, type Volt } from '../../shared/model/units.ts';
 import { conversionAt, type ChannelPlan } from '../../shared/pipeline/index.ts';
+import { shuntedFigure } from './shunt.ts';
 
 /** The exact forward of a channel's calibration: SI value to raw figure (per V of excitation). */
 export interface Acquisition {
   readonly forward: FractionalLinear;
   /** The input that measures the bridge's excitation, if one does. */
   readonly excitation: string | null;
+  /** What the node's own shunt makes of a raw figure; null: no bridge. */
+  readonly shunted: FractionalLinear | null;
 }
 
 /** null before the channel's first calibration record. `at` in s since 1970. */
 export const acquisitionOf = (plan: ChannelPlan, at: number): Acquisition | null => {
   const conversion = plan.conversions[conversionAt(plan.conversions, at)];
-  return conversion
-    ? { forward: inverse(conversion.map), excitation: conversion.excitation }
-    : null;
+  if (!conversion) return null;
+  const { map, excitation, record } = conversion;
+  return { forward: inverse(map), excitation, shunted: shuntedFigure(record) };
 };
 
-/** The figure for a true `value` in SI, before the converter rounds it. */
+/** The figure for a true `value` in SI, with the shunt or without, before the converter rounds it. */
 export const rawFigure = (
-  { forward, excitation }: Acquisition,
+  { forward, excitation, shunted }: Acquisition,
   value: number,
   supply: Volt,
-): number => apply(forward, value) * (excitation === null ? 1 : supply);
+  withShunt: boolean,
+): number => {
+  const map = withShunt && shunted ? compose(forward, shunted) : forward;
+  return apply(map, value) * (excitation === null ? 1 : supply);
+};
 
 /** What a 24-bit converter gives. */
 const [LOWEST_COUNT, HIGHEST_COUNT] = [-(2 ** 23), 2 ** 23 - 1];

@@ -1,5 +1,6 @@
 import mqtt from 'mqtt';
 import { encodeStatus } from '../../shared/pipeline/1-decode/status.ts';
+import { commandTopic } from '../../shared/pipeline/1-decode/command.ts';
 import { topicOf } from '../../shared/pipeline/1-decode/topics.ts';
 import { DEMO_FILTER } from './fault-request.ts';
 
@@ -49,7 +50,7 @@ export const openLink = (options: {
   client.on('connect', () => {
     client.options.reconnectPeriod = RECONNECT;
     publish(topic, status(true), true);
-    client.subscribe(DEMO_FILTER, { qos: 1 });
+    client.subscribe([DEMO_FILTER, commandTopic(node)], { qos: 1 });
     options.connected();
   });
   client.on('message', options.heard);

@@ -2,6 +2,7 @@
 import { randomUUID } from 'node:crypto';
 import { epochSeconds, seconds, type EpochSeconds } from '../../shared/model/units.ts';
 import type { FieldNode } from '../../shared/model/site.ts';
+import { answerTopic, commandTopic } from '../../shared/pipeline/1-decode/command.ts';
 import { encodeFrame } from '../../shared/pipeline/1-decode/frame.ts';
 import { encodeSenml } from '../../shared/pipeline/1-decode/senml.ts';
 import { topicOf } from '../../shared/pipeline/1-decode/topics.ts';
@@ -10,6 +11,7 @@ import { writeCbor } from '../ingest/cbor.ts';
 import { compileExpression } from '../site/expression.ts';
 import { loadSite } from '../site/load.ts';
 import { NODE_USAGE, readNodeArguments, type NodeArguments } from './arguments.ts';
+import { obey } from './command.ts';
 import { demoTopic, readFaultRequest } from './fault-request.ts';
 import { openLink, type Link } from './link.ts';
 import { eachPeriod } from './pace.ts';
@@ -60,7 +62,14 @@ const sendFrames = (
   });
 };
 
-const playRequests = (node: FieldNode, sampler: Sampler, link: () => Link) => {
+const answerCommand = (parsed: unknown, node: FieldNode, sampler: Sampler, link: Link) => {
+  const answer = obey(parsed, node, sampler, now());
+  if (answer.ok) return link.publish(answerTopic(node.id), JSON.stringify(answer.value));
+  const { field, expected, came } = answer.refusal;
+  say(`command: ${field}: expected ${expected}, came ${came}`);
+};
+
+const hear = (node: FieldNode, sampler: Sampler, link: () => Link) => {
   const inputs = node.inputs.map(({ name }) => name);
   return (topic: string, payload: Uint8Array) => {
     let parsed: unknown;
@@ -69,6 +78,7 @@ const playRequests = (node: FieldNode, sampler: Sampler, link: () => Link) => {
     } catch {
       return say(`${topic}: expected JSON, came something else`);
     }
+    if (topic === commandTopic(node.id)) return answerCommand(parsed, node, sampler, link());
     const isMine = topic === demoTopic(node.id);
     const request = readFaultRequest(parsed, inputs);
     if (!request.ok) {
@@ -96,7 +106,7 @@ const main = async () => {
   const link: Link = openLink({
     ...{ broker: args.broker, node: node.id, boot, say },
     connected: () => process.send?.('connected'),
-    heard: playRequests(node, sampler, () => link),
+    heard: hear(node, sampler, () => link),
   });
   const stopSending = isSlow(node)
     ? sendReadings(node, sampler, link)

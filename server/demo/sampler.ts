@@ -22,6 +22,8 @@ export interface Sampler {
   block(t0: EpochSeconds, dt: number, count: number): readonly InputBlock[];
   /** Begins a fault at a time, or ends all of them. */
   play(request: FaultRequest, at: EpochSeconds): void;
+  /** Lays the node's shunt across an input's bridge for so long from `at` on; false: it has none. */
+  shunt(input: string, at: EpochSeconds, seconds: number): boolean;
 }
 
 interface Feeling {
@@ -66,6 +68,8 @@ export const createSampler = (options: {
   }
   const broken = new Set<string>();
   const slips = new Map<string, Strain>();
+  /** When the shunt of an input was laid and when it comes off. */
+  const shunts = new Map<string, { readonly from: number; readonly until: number }>();
   let bumpBegan = Infinity;
   let sunBegan = Infinity;
 
@@ -85,7 +89,10 @@ export const createSampler = (options: {
     const slip = slips.get(name);
     if (slip !== undefined) slips.set(name, nextSlip(slip, strain(value), dt));
     const noise = feeling.influence.noise * normal();
-    return rawFigure(feeling.acquisition, value - (slips.get(name) ?? 0) + noise, supply);
+    const shunt = shunts.get(name);
+    const withShunt = shunt !== undefined && at >= shunt.from && at < shunt.until;
+    const felt = value - (slips.get(name) ?? 0) + noise;
+    return rawFigure(feeling.acquisition, felt, supply, withShunt);
   };
 
   const figure = (input: NodeInput, at: number, dt: number, supply: Volt): number => {
@@ -109,6 +116,11 @@ export const createSampler = (options: {
         }
       }
       return blocks.map(({ input, samples }) => ({ input: input.name, samples }));
+    },
+    shunt: (input, at, seconds) => {
+      if (!feelings.get(input)?.acquisition.shunted) return false;
+      shunts.set(input, { from: at, until: at + seconds });
+      return true;
     },
     play: (request, at) => {
       switch (request.fault) {

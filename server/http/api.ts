@@ -7,8 +7,9 @@ import type {
   TallyAnswer,
 } from '../../shared/protocol/http.ts';
 import { parseHistoryQuery, parseLimitsRequest } from '../../shared/protocol/parse.ts';
-import type { Core, SetUpDesk } from '../ports.ts';
+import type { CheckDesk, Core, SetUpDesk } from '../ports.ts';
 import { channelReports } from './channel-report.ts';
+import { createChecksApi, createZerosApi } from './checks-api.ts';
 import { jsonOnly } from './guard.ts';
 import { historyCsv, historyFileName } from './history-csv.ts';
 import { openApi } from './openapi/document.ts';
@@ -18,7 +19,7 @@ import { createSetUpApi } from './set-up-api.ts';
 const LARGEST_BODY = '64kb';
 
 /** The REST API, all that is below /api. */
-export const createApi = (core: Core, setUp: SetUpDesk): Router => {
+export const createApi = (core: Core, setUp: SetUpDesk, checks: CheckDesk): Router => {
   const router = Router();
   const { simulated } = core.site();
   const readOnly = methodNotAllowed('GET', 'HEAD');
@@ -108,6 +109,8 @@ export const createApi = (core: Core, setUp: SetUpDesk): Router => {
     .all(readOnly);
 
   router.use('/set-up', createSetUpApi(setUp));
+  router.use('/checks', createChecksApi(checks));
+  router.use('/zeros', createZerosApi(checks));
   router.use(notFound);
   return router;
 };

@@ -1,5 +1,5 @@
 import express, { type Express } from 'express';
-import type { Core, SetUpDesk } from '../ports.ts';
+import type { CheckDesk, Core, SetUpDesk } from '../ports.ts';
 import { createApi } from './api.ts';
 import { clientFiles } from './client-files.ts';
 import { headers, ownHost, ownPage } from './guard.ts';
@@ -9,6 +9,7 @@ import { failure, methodNotAllowed, notFound } from './problem.ts';
 export interface HttpParts {
   readonly core: Core;
   readonly setUp: SetUpDesk;
+  readonly checks: CheckDesk;
   readonly metrics: Metrics;
   /** The built page; need not be there. */
   readonly staticFolder: string;
@@ -20,12 +21,12 @@ export interface HttpParts {
 
 /** REST under /api, figures for monitoring at /metrics, the page everywhere else. */
 export const createHttp = (parts: HttpParts): Express => {
-  const { core, setUp, metrics, staticFolder, host, complain } = parts;
+  const { core, setUp, checks, metrics, staticFolder, host, complain } = parts;
   const app = express();
   app.disable('x-powered-by');
   app.disable('etag');
   app.use(headers(core.site().simulated), ownHost(host), ownPage);
-  app.use('/api', createApi(core, setUp));
+  app.use('/api', createApi(core, setUp, checks));
   app
     .route('/metrics')
     .get(async (_request, response) => {

@@ -1,6 +1,7 @@
 import type { ErrorRequestHandler, RequestHandler, Response } from 'express';
 import type { Fault } from '../../shared/model/fault.ts';
 import type { Problem } from '../../shared/protocol/http.ts';
+import type { SetUpOutcome } from '../ports.ts';
 
 export const sendProblem = (
   response: Response,
@@ -10,6 +11,19 @@ export const sendProblem = (
 ): void => {
   const problem: Problem = { error, faults };
   response.status(status).set('Cache-Control', 'no-store').json(problem);
+};
+
+/** Somebody else was first: who, and with what. */
+export const sendConflict = (
+  response: Response,
+  outcome: Extract<SetUpOutcome, { kind: 'conflict' }>,
+  basedOn: number | null,
+): void => {
+  const { kind: _, ...stands } = outcome;
+  const expected = `revision ${stands.revision}, which ${stands.author} made meanwhile`;
+  const faults = [{ path: '/basedOn', expected, came: basedOn === null ? '' : String(basedOn) }];
+  const error = 'Somebody else has changed the set-up; yours was not taken.';
+  response.status(409).json({ error, faults, ...stands });
 };
 
 export const notFound: RequestHandler = ({ originalUrl }, response) => {

@@ -1,21 +1,11 @@
-import express, { Router, type Response } from 'express';
+import express, { Router } from 'express';
 import { parseSetUpPreview, parseSetUpRequest } from '../../shared/protocol/parse-set-up.ts';
-import type { PreviewLine } from '../../shared/protocol/http.ts';
 import type { SetUpDesk } from '../ports.ts';
 import { jsonOnly } from './guard.ts';
-import { methodNotAllowed, sendProblem } from './problem.ts';
+import { sendLines } from './lines.ts';
+import { methodNotAllowed, sendConflict, sendProblem } from './problem.ts';
 
 const LARGEST_BODY = '8mb';
-
-/** A line each as it comes; the reader's going away ends the work. */
-const sendLines = async (response: Response, lines: AsyncGenerator<PreviewLine>): Promise<void> => {
-  response.set('Content-Type', 'application/x-ndjson');
-  for await (const line of lines) {
-    if (response.closed) return;
-    response.write(`${JSON.stringify(line)}\n`);
-  }
-  response.end();
-};
 
 /** The set-up of the site: read, tried on the past, changed. */
 export const createSetUpApi = (desk: SetUpDesk): Router => {
@@ -35,14 +25,8 @@ export const createSetUpApi = (desk: SetUpDesk): Router => {
           return void response.json(desk.answer());
         case 'refused':
           return sendProblem(response, 422, 'This set-up is refused.', outcome.faults);
-        case 'conflict': {
-          const { kind: _, ...stands } = outcome;
-          const expected = `revision ${stands.revision}, which ${stands.author} made meanwhile`;
-          const came = parsed.ok ? String(parsed.value.basedOn) : '';
-          const faults = [{ path: '/basedOn', expected, came }];
-          const error = 'Somebody else has changed the set-up; yours was not taken.';
-          response.status(409).json({ error, faults, ...stands });
-        }
+        case 'conflict':
+          return sendConflict(response, outcome, parsed.ok ? parsed.value.basedOn : null);
       }
     })
     .all(methodNotAllowed('GET', 'HEAD', 'PUT'));

@@ -2,11 +2,12 @@ import { once, type EventEmitter } from 'node:events';
 import { createServer, type AddressInfo, type Server, type Socket } from 'node:net';
 import { Aedes, type AedesPublishPacket, type Client } from 'aedes';
 import { TOPIC_ROOT } from '../../shared/pipeline/1-decode/topics.ts';
-import type { Clock, Delivery, FrameSource } from '../ports.ts';
+import type { Clock, Delivery, FrameSource, NodeCommands } from '../ports.ts';
+import { CommandPost } from './command-post.ts';
 import { LONGEST_READ } from './decode.ts';
 import { announcedLength, readOn } from './read-on.ts';
 
-export interface EmbeddedBroker extends FrameSource {
+export interface EmbeddedBroker extends FrameSource, NodeCommands {
   /** The port it listens on, once started. */
   port(): number;
 }
@@ -36,6 +37,23 @@ export const embeddedBroker = (options: {
   let server: Server | null = null;
   let open = false;
 
+  const post = new CommandPost(
+    clock,
+    (topic, payload) =>
+      new Promise((resolve, reject) => {
+        if (!broker || !open) return reject(new Error('the broker is not running'));
+        const packet = {
+          cmd: 'publish',
+          topic,
+          payload,
+          qos: 1,
+          retain: false,
+          dup: false,
+        } as const;
+        broker.publish(packet, (error) => (error ? reject(error) : resolve()));
+      }),
+  );
+
   /** Counts a publication that waits; answers how to count it off. */
   const countIn = (client: Client | null): (() => void) => {
     if (!client) return () => undefined;
@@ -51,6 +69,7 @@ export const embeddedBroker = (options: {
     aedes.authorizePublish = (client, packet, done) => {
       if (!packet.topic.startsWith(`${TOPIC_ROOT}/`)) return allow(client, packet, done);
       if (!open) return done(new Error('stopping'));
+      if (post.takes(packet.topic, bytesOf(packet.payload))) return done(null);
       const countOff = countIn(client);
       receive({
         topic: packet.topic,
@@ -84,6 +103,7 @@ export const embeddedBroker = (options: {
 
   const stop = async () => {
     open = false;
+    post.close();
     const listening = server;
     if (listening?.listening) {
       const closed = new Promise<void>((resolve) => listening.close(() => resolve()));
@@ -111,6 +131,7 @@ export const embeddedBroker = (options: {
       listening.on('error', (error) => say?.(`broker: ${error.message}`));
       open = true;
     },
+    command: post.command,
     connected: () => open,
     port,
     address,

@@ -1,6 +1,7 @@
 import mqtt, { type ErrorWithReasonCode, type IClientOptions, type MqttClient } from 'mqtt';
 import { TOPIC_FILTER } from '../../shared/pipeline/1-decode/topics.ts';
-import type { Clock, FrameSource } from '../ports.ts';
+import type { Clock, FrameSource, NodeCommands } from '../ports.ts';
+import { CommandPost } from './command-post.ts';
 import { LONGEST_READ } from './decode.ts';
 import { deferPubacks } from './deferred-puback.ts';
 
@@ -59,12 +60,18 @@ export const externalBroker = (options: {
   readonly clock: Clock;
   readonly protocolVersion?: 4 | 5;
   readonly say?: (line: string) => void;
-}): FrameSource => {
+}): FrameSource & NodeCommands => {
   const { clock, clientId, protocolVersion, say } = options;
   const { protocol, host } = new URL(options.url);
   const place = `${protocol}//${host}`;
   let client: MqttClient | null = null;
   let open = false;
+
+  const post = new CommandPost(clock, async (topic, payload) => {
+    // Kept by the client until it is connected again, a command would come when nobody expects it.
+    if (!client?.connected) throw new Error(`${place} is out of reach`);
+    await client.publishAsync(topic, payload, { qos: 1, retain: false });
+  });
 
   const firstSubscription = (connecting: MqttClient): Promise<void> =>
     new Promise((resolve, reject) => {
@@ -91,6 +98,7 @@ export const externalBroker = (options: {
     });
 
   return {
+    command: post.command,
     connected: () => client?.connected ?? false,
     address: () => place,
     description: () =>
@@ -106,6 +114,7 @@ export const externalBroker = (options: {
       deferPubacks(connecting, ({ topic, payload, retain }, acknowledge) => {
         if (!open) return;
         const bytes = typeof payload === 'string' ? Buffer.from(payload) : payload;
+        if (post.takes(topic, bytes)) return acknowledge();
         receive({ topic, payload: bytes, retained: retain, arrived: clock.now(), acknowledge });
       });
       persist(connecting, protocolVersion === undefined);
@@ -116,6 +125,7 @@ export const externalBroker = (options: {
     },
     stop: async () => {
       open = false;
+      post.close();
       if (!client) return;
       const { stream } = client;
       const cancel = clock.after(LAST_WAIT, () => stream.destroy());

@@ -4,8 +4,10 @@ import { join } from 'node:path';
 import { afterAll, expect, onTestFinished, test } from 'vitest';
 import type { SiteRevision } from '../../server/ports.ts';
 import { openSqliteStores } from '../../server/store/sqlite/open.ts';
+import type { CheckKind } from '../../shared/channel-check/verdict.ts';
 import type { AlarmEvent, Limit } from '../../shared/model/limit.ts';
 import { epochSeconds, seconds } from '../../shared/model/units.ts';
+import type { CheckRecord } from '../../shared/protocol/checks.ts';
 
 const root = mkdtempSync(join(tmpdir(), 'yieldward-records-'));
 afterAll(() => rmSync(root, { recursive: true, force: true }));
@@ -64,7 +66,7 @@ test('revisions of the site stay, each once, and a records file of version 1 is 
   await first.records.close();
   await first.samples.close();
   const file = new Database(join(folder, 'records.sqlite'));
-  file.exec('DROP TABLE site_revision');
+  file.exec('DROP TABLE site_revision; DROP TABLE channel_check');
   file.pragma('user_version = 1');
   file.close();
 
@@ -89,6 +91,42 @@ test('revisions of the site stay, each once, and a records file of version 1 is 
   const { text: _, ...head } = second;
   expect(await again.records.siteRevisions(1)).toEqual([head]);
   expect(await again.records.siteRevisions(9)).toHaveLength(2);
+});
+
+test('checks of channels stay; the last of each channel and kind is at hand, across a restart', async () => {
+  const folder = join(root, 'd');
+  const record = (channel: string, kind: CheckKind, figure: number, at: number): CheckRecord => ({
+    ...{ channel, at, author: 'A', revision: 3, note: 'as wired' },
+    check: {
+      ...{ kind, verdict: 'pass', figure, unit: 'm/m', why: 'Quiet.' },
+      ...{ limits: { good: 1, bad: 2 }, also: [{ name: 'robust', value: figure, unit: 'm/m' }] },
+    },
+    given: { kind: 'samples', from: at - 20, to: at },
+  });
+  const [first, other, second, elsewhere] = [
+    record('c1', 'noise', 0.5, 10),
+    record('c1', 'drift', 0.25, 10),
+    record('c1', 'noise', 0.75, 5),
+    record('c2', 'noise', 0.1, 7),
+  ] as const;
+  const before = await openSqliteStores(folder, {});
+  await before.records.addCheckRecords([first, other]);
+  await before.records.addCheckRecords([second, elsewhere]);
+  await before.records.close();
+  await before.samples.close();
+
+  const again = await openSqliteStores(folder, {});
+  onTestFinished(async () => {
+    await again.records.close();
+    await again.samples.close();
+  });
+  // The last that was added, whatever its clock said.
+  expect(await again.records.lastCheckRecords()).toEqual([other, second, elsewhere]);
+  const broken = { ...first, author: undefined } as unknown as CheckRecord;
+  await expect(
+    again.records.addCheckRecords([record('c3', 'noise', 1, 9), broken]),
+  ).rejects.toThrow();
+  expect(await again.records.lastCheckRecords()).toHaveLength(3);
 });
 
 test('a store that a newer version wrote is not touched, and says so', async () => {

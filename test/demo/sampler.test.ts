@@ -190,3 +190,32 @@ describe('faults', () => {
     expect(steel(300 + 10 * 60) - steel(-1)).toBeLessThan(2);
   });
 });
+
+describe('the shunt of a node', () => {
+  // −Rg/(GF·(Rg + Rs)) of 350 Ω, GF 2.11 and 350 kΩ, parallel resistors; the leads of 0.9 Ω beside
+  // the gauge take off Rg/(Rg + RL), 0.26 %; computed.
+  const DUE = -473.46;
+
+  test('adds the output of 350 kΩ across the gauge for as long as it is asked', () => {
+    const sampler = samplers().get('n1');
+    if (!sampler) throw new Error('n1');
+    expect(sampler.shunt('s7', epochSeconds(BEGIN - 60), 10)).toBe(true);
+    const [before, during, after] = [-61, -55, -49].map(
+      (since) => strainAfter(sampler, 'B1-mid-bottom-left', since) * 1e6,
+    );
+    const step = (during ?? NaN) - (before ?? NaN);
+    expect(step / DUE).toBeCloseTo(1, 2);
+    expect(Math.abs((after ?? NaN) - (before ?? NaN))).toBeLessThan(0.5);
+  });
+
+  test('comes off early when it is told, and leaves inputs without a bridge alone', () => {
+    const sampler = samplers().get('n1');
+    if (!sampler) throw new Error('n1');
+    sampler.shunt('s7', epochSeconds(BEGIN - 60), 10);
+    sampler.shunt('s7', epochSeconds(BEGIN - 58), 0);
+    const left = strainAfter(sampler, 'B1-mid-bottom-left', -55) * 1e6;
+    expect(Math.abs(left)).toBeLessThan(3);
+    expect(sampler.shunt('s9', epochSeconds(BEGIN), 10)).toBe(false);
+    expect(sampler.shunt('ex', epochSeconds(BEGIN), 10)).toBe(false);
+  });
+});

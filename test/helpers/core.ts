@@ -1,5 +1,5 @@
 /** The core's port as a plain object over a small site that has one of every kind of channel. */
-import type { Core, SetUpDesk } from '../../server/ports.ts';
+import type { CheckDesk, Core, SetUpDesk } from '../../server/ports.ts';
 import type { CalibrationRecord, Leads, Signal } from '../../shared/model/calibration.ts';
 import { accept } from '../../shared/model/frame.ts';
 import type { AlarmEvent, Limit } from '../../shared/model/limit.ts';
@@ -18,6 +18,7 @@ import {
   squareMetre,
   volt,
 } from '../../shared/model/units.ts';
+import type { ChannelChecks } from '../../shared/protocol/checks.ts';
 import type { CurrentValue, Health, NodeTally } from '../../shared/protocol/http.ts';
 import { PLAIN_GAUGE } from './plain-gauge.ts';
 
@@ -243,3 +244,43 @@ export const plainDesk = (over: Partial<SetUpDesk> = {}): SetUpDesk => {
     ...over,
   };
 };
+
+const CHECKED: ChannelChecks = {
+  channel: 'ratio',
+  verdict: 'pass',
+  checks: [
+    {
+      check: {
+        ...{ kind: 'noise', verdict: 'pass', figure: 8e-7, unit: 'm/m', why: 'Quiet.' },
+        ...{ limits: { good: 2e-6, bad: 1e-5 }, also: [] },
+      },
+      record: {
+        ...{ at: START, author: 'A', revision: 1, note: '' },
+        given: { kind: 'samples', from: START - 20, to: START },
+      },
+    },
+  ],
+};
+
+const checkedLines = () => ({
+  ok: true as const,
+  lines: (async function* () {
+    yield { kind: 'phase', phase: 'rest', seconds: 2 } as const;
+    yield { kind: 'progress', done: 1, of: 1, channel: CHECKED } as const;
+    yield { kind: 'result', channels: [CHECKED] } as const;
+  })(),
+});
+
+/** A desk by which every check passes; `over`: what a test wants otherwise. */
+export const plainChecks = (over: Partial<CheckDesk> = {}): CheckDesk => ({
+  answer: async () => ({ simulated: true, revision: 1, channels: [CHECKED] }),
+  run: checkedLines,
+  push: checkedLines,
+  shunt: checkedLines,
+  enter: async () => ({ ok: true, value: CHECKED }),
+  zero: async () => ({
+    kind: 'answered',
+    answer: { simulated: true, revision: 2, zeroed: [], refused: [], cautions: [] },
+  }),
+  ...over,
+});

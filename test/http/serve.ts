@@ -7,9 +7,9 @@ import { text } from 'node:stream/consumers';
 import { onTestFinished } from 'vitest';
 import { createHttp } from '../../server/http/http.ts';
 import { createMetrics } from '../../server/http/metrics.ts';
-import type { Core, SetUpDesk } from '../../server/ports.ts';
+import type { CheckDesk, Core, SetUpDesk } from '../../server/ports.ts';
 import { fakeClock } from '../helpers/fakes.ts';
-import { plainCore, plainDesk, START } from '../helpers/core.ts';
+import { plainChecks, plainCore, plainDesk, START } from '../helpers/core.ts';
 import { temporaryFolder } from '../helpers/process.ts';
 
 export interface Answer {
@@ -39,6 +39,7 @@ export const serve = async (
   over: Partial<Core> = {},
   host = '127.0.0.1',
   desk: Partial<SetUpDesk> = {},
+  checks: Partial<CheckDesk> = {},
 ): Promise<Served> => {
   const core = plainCore(over);
   const folder = join(temporaryFolder(), 'page');
@@ -47,6 +48,7 @@ export const serve = async (
   const app = createHttp({
     core,
     setUp: plainDesk(desk),
+    checks: plainChecks(checks),
     metrics: createMetrics({ core, clock: fakeClock(START + 61) }),
     staticFolder: folder,
     host,

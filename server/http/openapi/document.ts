@@ -1,4 +1,6 @@
 import { DEFAULT_POINTS, HISTORY_FORMATS, MOST_POINTS } from '../../../shared/protocol/parse.ts';
+import { CHECK_PATHS } from './check-paths.ts';
+import { CHECK_SCHEMAS } from './check-schemas.ts';
 import { EXAMPLES } from './examples.ts';
 import { LIVE_SCHEMAS } from './live-schemas.ts';
 import {
@@ -150,11 +152,12 @@ export const openApi = (version: string) => ({
     '/api/alarms': all('alarms', 'Alarms now and before', 'AlarmsAnswer', EXAMPLES.alarms),
     '/api/tally': all('tally', 'Frames of every node', 'TallyAnswer', EXAMPLES.tally),
     ...SET_UP_PATHS,
+    ...CHECK_PATHS,
     '/api/openapi.json': all('openApi', 'This document', 'OpenApi'),
     '/metrics': metricsPath,
   },
   components: {
-    schemas: { ...LIVE_SCHEMAS, ...SET_UP_SCHEMAS, ...SITE_SCHEMAS },
+    schemas: { ...LIVE_SCHEMAS, ...SET_UP_SCHEMAS, ...CHECK_SCHEMAS, ...SITE_SCHEMAS },
     headers: {
       Simulated: {
         description: 'yes: the nodes are simulated, and so is every figure',

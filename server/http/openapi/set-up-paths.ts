@@ -2,13 +2,14 @@ import { EXAMPLES } from './examples.ts';
 import { content, FAILED, json, OTHER_HOST, problem, read, SIMULATED_HEADER } from './operation.ts';
 import { ref } from './schema.ts';
 
-const refusals = {
+/** Of every request that carries a body and changes something. */
+export const REFUSALS = {
   400: problem('The body is not JSON'),
   403: problem("Sent by another site's page"),
   413: problem('The body is too large'),
   415: problem('The body is not application/json'),
   421: OTHER_HOST,
-  422: problem('Every fault of the set-up; nothing was changed'),
+  422: problem('Every fault of what came; nothing was changed'),
   500: FAILED,
 };
 
@@ -27,7 +28,7 @@ export const SET_UP_PATHS = {
       requestBody: body('SetUpRequest', EXAMPLES.setUpRequest),
       responses: {
         200: json('Durable and in force', 'SetUpAnswer'),
-        ...refusals,
+        ...REFUSALS,
         409: json('Somebody else changed it first', 'SetUpConflict'),
       },
     },
@@ -48,7 +49,7 @@ export const SET_UP_PATHS = {
           headers: { 'X-Simulated': SIMULATED_HEADER },
           content: { 'application/x-ndjson': { schema: ref('PreviewLine') } },
         },
-        ...refusals,
+        ...REFUSALS,
       },
     },
   },

@@ -138,6 +138,8 @@ export const openSqliteStores = async (
     addSiteRevision: (...args) => writer.call('records', 'addSiteRevision', args),
     siteRevision: () => writer.call('records', 'siteRevision', []),
     siteRevisions: (atMost) => writer.call('records', 'siteRevisions', [atMost]),
+    addCheckRecords: (checks) => writer.call('records', 'addCheckRecords', [checks]),
+    lastCheckRecords: () => writer.call('records', 'lastCheckRecords', []),
     close: () => closeOne('records'),
   };
   return { samples, records };

@@ -1,4 +1,5 @@
 import type { AlarmEvent, Limit } from '../../../shared/model/limit.ts';
+import type { CheckRecord } from '../../../shared/protocol/checks.ts';
 import type { LimitChange, SiteRevision } from '../../ports.ts';
 import { openFile, type Database } from './schema.ts';
 
@@ -72,6 +73,30 @@ export class SqliteRecords {
           'ORDER BY revision DESC LIMIT ?',
       )
       .all(atMost) as Omit<SiteRevision, 'text'>[];
+  }
+
+  addCheckRecords(records: readonly CheckRecord[]): void {
+    const insert = this.#database.prepare(
+      'INSERT INTO channel_check (channel, kind, verdict, at, author, revision, body) ' +
+        'VALUES (?, ?, ?, ?, ?, ?, ?)',
+    );
+    this.#database.transaction(() => {
+      for (const record of records) {
+        const { channel, check, at, author, revision } = record;
+        const body = JSON.stringify(record);
+        insert.run(channel, check.kind, check.verdict, at, author, revision, body);
+      }
+    })();
+  }
+
+  lastCheckRecords(): CheckRecord[] {
+    const rows = this.#database
+      .prepare(
+        'SELECT body FROM channel_check ' +
+          'WHERE id IN (SELECT max(id) FROM channel_check GROUP BY channel, kind) ORDER BY id',
+      )
+      .all() as { body: string }[];
+    return rows.map(({ body }) => JSON.parse(body) as CheckRecord);
   }
 
   close(): void {

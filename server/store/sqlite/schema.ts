@@ -50,10 +50,18 @@ const SITE_REVISIONS = `
     origin TEXT NOT NULL, text TEXT NOT NULL);
 `;
 
+/** body: the CheckRecord, JSON. */
+const CHANNEL_CHECKS = `
+  CREATE TABLE channel_check (
+    id INTEGER PRIMARY KEY, channel TEXT NOT NULL, kind TEXT NOT NULL, verdict TEXT NOT NULL,
+    at REAL NOT NULL, author TEXT NOT NULL, revision INTEGER NOT NULL, body TEXT NOT NULL);
+  CREATE INDEX channel_check_place ON channel_check (channel, kind, id);
+`;
+
 /** What makes each version out of the one before; a file is at the version of as many as it has. */
 const FILES: Readonly<Record<'samples' | 'records', readonly string[]>> = {
   samples: [SAMPLES],
-  records: [RECORDS, SITE_REVISIONS],
+  records: [RECORDS, SITE_REVISIONS, CHANNEL_CHECKS],
 };
 
 /** Opens or makes a file of the data folder; everything committed is on disk (WAL, full sync). */
