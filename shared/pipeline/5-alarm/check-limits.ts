@@ -1,5 +1,6 @@
 import type { Fault } from '../../model/fault.ts';
 import type { Limit, LimitBasis, LimitContext } from '../../model/limit.ts';
+import { figureInWords, limitInWords, shareInWords, shareOfYield } from './limit-words.ts';
 import { thresholdOf } from './threshold.ts';
 
 const LONGEST_ON_DELAY = 3600;
@@ -25,40 +26,40 @@ export const basesFor = ({ measurand, stressPerStrain }: LimitContext): readonly
 /** A limit stated as all of yield has gone through its strain and back. */
 const ROUNDING = 1e-9;
 
-const percent = (share: number): string => `${Number((share * 100).toPrecision(4))} % of yield`;
-
 const figureFaults = (limit: Limit, at: string, context: LimitContext): Fault[] => {
   const faults: Fault[] = [];
-  const fault = (field: string, expected: string, came: unknown) =>
-    faults.push({ path: `${at}/${field}`, expected, came: String(came) });
+  const fault = (field: string, expected: string, came: string) =>
+    faults.push({ path: `${at}/${field}`, expected, came });
+  const inWords = (figure: number) => figureInWords(figure, limit.basis, context);
   const bases = basesFor(context);
   if (!bases.includes(limit.basis)) {
     fault('basis', `${bases.join(', ')} for a ${context.measurand} channel`, limit.basis);
   }
   if (!(Number.isFinite(limit.value) && limit.value > 0)) {
-    fault('value', 'a figure above 0', limit.value);
+    fault('value', 'a figure above 0', inWords(limit.value));
   } else if (!(limit.deadband >= 0 && limit.deadband < limit.value)) {
-    fault('deadband', `from 0 to below the limit's value of ${limit.value}`, limit.deadband);
+    const expected = `from 0 to below the limit's value of ${inWords(limit.value)}`;
+    fault('deadband', expected, inWords(limit.deadband));
   }
   if (!(limit.onDelay >= 0 && limit.onDelay <= LONGEST_ON_DELAY)) {
-    fault('onDelay', `from 0 to ${LONGEST_ON_DELAY} s`, limit.onDelay);
+    fault('onDelay', `from 0 to ${LONGEST_ON_DELAY} s`, `${limit.onDelay} s`);
   }
   return faults;
 };
 
 /** A limit has to lie below yield, and within the share of it that the site allows. */
 const yieldFault = (limit: Limit, at: string, context: LimitContext): Fault | null => {
-  const { stressPerStrain, yieldStrength, highestLimit } = context;
-  if (stressPerStrain === null || yieldStrength === null) return null;
-  const used = (thresholdOf(limit, context).raise * stressPerStrain) / yieldStrength;
+  const { highestLimit } = context;
+  const used = shareOfYield(limit, context);
+  if (used === null) return null;
   const isBelowYield = used < 1 - ROUNDING;
   if (isBelowYield && used <= highestLimit * (1 + ROUNDING)) return null;
   return {
     path: `${at}/value`,
     expected: !isBelowYield
       ? 'below yield'
-      : `at most ${percent(highestLimit)}, the highest the site allows`,
-    came: percent(used),
+      : `at most ${shareInWords(highestLimit)}, the highest the site allows`,
+    came: shareInWords(used),
   };
 };
 
@@ -69,10 +70,11 @@ const orderFault = (limits: readonly Limit[], context: LimitContext): Fault | nu
   if (!caution || !stop) return null;
   const [first, second] = [thresholdOf(caution, context).raise, thresholdOf(stop, context).raise];
   if (first < second) return null;
+  const inWords = (limit: Limit) => limitInWords(limit, context, caution.basis !== stop.basis);
   return {
     path: `/limits/${limits.indexOf(caution)}/value`,
-    expected: `below the stop limit of ${stop.value} (${stop.basis})`,
-    came: `${caution.value} (${caution.basis})`,
+    expected: `below the stop limit of ${inWords(stop)}`,
+    came: inWords(caution),
   };
 };
 

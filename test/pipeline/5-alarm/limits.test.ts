@@ -69,14 +69,48 @@ describe('limits that are refused, with the reason', () => {
     // The wrong unit typed: 900 MPa meant as 900 µε.
     expect(
       limitFaults([limit({ basis: 'stress', value: megapascalToPascal(900) })], S275),
-    ).toMatchObject([{ expected: 'below yield', came: '327.3 % of yield' }]);
+    ).toMatchObject([{ expected: 'below yield', came: '327.273 % of yield' }]);
   });
 
   test('caution at or above stop, in whatever bases they are stated', () => {
     const stop = limit({ basis: 'share', value: 0.5 });
     const caution = (value: number) => limit({ level: 'caution', basis: 'stress', value });
     expect(pathsOf([caution(megapascalToPascal(137)), stop])).toEqual([]);
-    expect(pathsOf([caution(megapascalToPascal(137.5)), stop])).toEqual(['/limits/0/value']);
+    expect(limitFaults([caution(megapascalToPascal(137.5)), stop], S275)).toEqual([
+      {
+        path: '/limits/0/value',
+        expected: 'below the stop limit of 50 % of yield',
+        came: '137.5 MPa (50 % of yield)',
+      },
+    ]);
+  });
+
+  test('in the unit that each is stated in, not in SI', () => {
+    const came = (limits: Limit[], context: LimitContext) =>
+      limitFaults(limits, context).map((fault) => [fault.expected, fault.came]);
+    const caution = { level: 'caution', value: microstrainToStrain(950) } as const;
+    expect(came([limit(caution), limit({})], S275)).toEqual([
+      ['below the stop limit of 900 µε', '950 µε'],
+    ]);
+    const wide = limit({ deadband: microstrainToStrain(901) });
+    expect(came([wide], S275)).toEqual([[`from 0 to below the limit's value of 900 µε`, '901 µε']]);
+    const values: [LimitContext['measurand'], number, string][] = [
+      ['force', 125e3, '125 kN'],
+      ['displacement', 0.0123, '12.3 mm'],
+      ['temperature', 60, '60 °C'],
+      ['moment', 40e3, '40 kN·m'],
+      ['angle', Math.PI / 6, '30°'],
+      ['number', 1.25, '1.25'],
+    ];
+    for (const [measurand, value, words] of values) {
+      const pair = [
+        limit({ level: 'caution', basis: 'value', value }),
+        limit({ basis: 'value', value }),
+      ];
+      expect(came(pair, { ...LOAD, measurand })).toEqual([
+        [`below the stop limit of ${words}`, words],
+      ]);
+    }
   });
 
   test('every fault at once', () => {
