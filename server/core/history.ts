@@ -7,7 +7,7 @@ import {
 } from '../../shared/model/units.ts';
 import type { ChannelPlan, Conversion } from '../../shared/pipeline/index.ts';
 import { lastBefore } from '../../shared/series/last-before.ts';
-import type { Range } from '../../shared/pipeline/convert.ts';
+import { isWithin, type Range } from '../../shared/pipeline/convert.ts';
 import type { Envelope, EnvelopeQuery, SampleStore } from '../ports.ts';
 
 type Column = (number | null)[];
@@ -34,11 +34,9 @@ const windows = (plan: ChannelPlan, from: number, to: number): Window[] =>
     return start < end ? [{ from: start, to: end, conversion }] : [];
   });
 
-/** Times of points in which a sample reached an end of its range, as float32 holds it (see `convert`). */
+/** Times of points in which a sample reached an end of its range. */
 const overRange = (raw: Envelope, range: Range): ReadonlySet<number> => {
-  const [low, high] = (range ?? [-Infinity, Infinity]).map(Math.fround) as [number, number];
-  const inside = (i: number) =>
-    Math.fround(raw.min[i] ?? NaN) > low && Math.fround(raw.max[i] ?? NaN) < high;
+  const inside = (i: number) => [raw.min[i], raw.max[i]].every((x) => isWithin(x ?? NaN, range));
   return new Set([...raw.t].filter((_, i) => !inside(i)));
 };
 

@@ -12,10 +12,16 @@ export interface Stretch {
   quality: Quality;
 }
 
-/** The ends of a range as the samples' own type holds them: a float32 at the rail is at the rail. */
-const ends = (range: Range, raw: RawArray): readonly [low: number, high: number] => {
+/** The ends of a range as float32 or wider samples hold them: a float32 at the rail is at the rail. */
+const ends = (range: Range, isFloat32: boolean): readonly [low: number, high: number] => {
   const [low, high] = range ?? [-Infinity, Infinity];
-  return raw instanceof Float32Array ? [Math.fround(low), Math.fround(high)] : [low, high];
+  return isFloat32 ? [Math.fround(low), Math.fround(high)] : [low, high];
+};
+
+/** Is a single sample within its range? One that a float32 can hold is taken for a float32. */
+export const isWithin = (sample: number, range: Range): boolean => {
+  const [low, high] = ends(range, Math.fround(sample) === sample);
+  return sample > low && sample < high;
 };
 
 /**
@@ -32,7 +38,7 @@ export const convert = (
   out: Float64Array,
 ): Stretch => {
   const { a, b, c, d } = map;
-  const [low, high] = ends(range, raw);
+  const [low, high] = ends(range, raw instanceof Float32Array);
   let min = Infinity;
   let max = -Infinity;
   for (let i = from; i < to; i++) {
@@ -63,8 +69,8 @@ export const convertOver = (
   out: Float64Array,
 ): Stretch => {
   const ratios = new Float64Array(to);
-  const [low, high] = ends(excitationRange, excitation);
-  const [rawLow, rawHigh] = ends(range, raw);
+  const [low, high] = ends(excitationRange, excitation instanceof Float32Array);
+  const [rawLow, rawHigh] = ends(range, raw instanceof Float32Array);
   for (let i = from; i < to; i++) {
     const x = raw[i] ?? NaN;
     const over = excitation[i] ?? NaN;
