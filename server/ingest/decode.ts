@@ -48,6 +48,8 @@ export const createDecode = (site: Site): Decode => {
         return pack.ok ? { kind: 'samples', node, ...pack.value } : refused(pack.refusal);
       }
       case 'status': {
+        // Clears what the broker retained [MQTT-3.3.1-10]; says nothing of the node.
+        if (payload.length === 0) return { kind: 'other' };
         const status = chain(readJson(payload), decodeStatus);
         if (!status.ok) return refused(status.refusal);
         return { kind: 'status', node, online: status.value.online };

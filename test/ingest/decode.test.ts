@@ -68,3 +68,8 @@ test('a node without a proper name is refused, another topic is not ours', () =>
   expect(deliver('yieldward/1/<x>/frame', '')).toMatchObject({ kind: 'refused' });
   expect(deliver('yieldward/1/n1/elsewhere', '')).toEqual({ kind: 'other' });
 });
+
+test('an empty status clears what was retained [MQTT-3.3.1-10] and is no refusal', () => {
+  expect(deliver(topicOf('n1', 'status'), '')).toEqual({ kind: 'other' });
+  expect(deliver(topicOf('n1', 'frame'), '').kind).toBe('refused');
+});

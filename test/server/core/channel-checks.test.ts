@@ -129,7 +129,7 @@ const SHOWN = -473.46e-6;
 test('a shunt on command is laid, read, taken off and read again', async () => {
   const { checks, clock, feed, lines, told } = await checkScene();
   const begin = clock.now();
-  const on = (t: number) => (t >= begin && t < begin + 5.5 ? SHOWN : 0);
+  const on = (t: number) => (t >= begin && t < begin + 6 ? SHOWN : 0);
   await feed(begin - 10, begin + 20, { channel: TIP, at: on });
   const all = await lines(checks.shunt(SHUNT));
   expect(told.map(({ node, input, on: laid }) => [node, input, laid])).toEqual([

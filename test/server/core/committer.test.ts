@@ -31,7 +31,7 @@ const scene = () => {
   const clock = fakeClock();
   const committer = new Committer({
     samples: samples as SampleStore,
-    records: records as RecordStore,
+    records,
     clock,
     health: (trouble) => log.push(`health ${trouble ?? 'ok'}`),
   });
