@@ -1,63 +1,13 @@
 import { describe, expect, test } from 'vitest';
 import { channelEnvelope } from '../../../server/core/history.ts';
 import { compileExpression } from '../../../server/site/expression.ts';
-import type { CalibrationRecord, Response, Signal } from '../../../shared/model/calibration.ts';
+import type { Signal } from '../../../shared/model/calibration.ts';
 import type { RawArray } from '../../../shared/model/frame.ts';
-import type { MeasuredChannel, NodeInput, Site } from '../../../shared/model/site.ts';
-import { epochSeconds, ohm, ratio, seconds, volt } from '../../../shared/model/units.ts';
+import { epochSeconds, seconds, volt } from '../../../shared/model/units.ts';
 import { planSite } from '../../../shared/pipeline/index.ts';
-import { SITE, START } from '../../helpers/core.ts';
+import { START } from '../../helpers/core.ts';
 import { memorySamples } from '../../helpers/memory-samples.ts';
-import { PLAIN_GAUGE } from '../../helpers/plain-gauge.ts';
-
-const RATIO: Signal = { kind: 'ratio' };
-
-const quarter = (gaugeFactor: number): Response => ({
-  ...{ kind: 'bridge', circuit: 'quarter', gaugeFactor, gaugeResistance: ohm(350), poisson: 0.3 },
-  ...{ leads: { kind: 'none' }, zero: ratio(0), ...PLAIN_GAUGE },
-});
-
-const record = (
-  id: string,
-  from: number,
-  response: Response,
-  signal: Signal = RATIO,
-  corrects: string | null = null,
-): CalibrationRecord => ({
-  ...{ id, validFrom: epochSeconds(from), author: 'A', reason: 'R', recordedAt: null, corrects },
-  ...{ signal, response },
-});
-
-interface Given {
-  readonly calibration: readonly CalibrationRecord[];
-  readonly zeros?: MeasuredChannel['zeros'];
-  readonly measurand?: MeasuredChannel['measurand'];
-  readonly range?: NodeInput['range'];
-}
-
-const siteWith = ({ calibration, zeros = [], measurand = 'strain', range = null }: Given): Site => {
-  const channel: MeasuredChannel = {
-    ...{ kind: 'measured', id: 'tip', name: 'Tip', measurand, node: 'n1', input: 'a', limits: [] },
-    ...{ calibration, zeros },
-  };
-  return {
-    ...SITE,
-    structures: SITE.structures.map((structure) => ({
-      ...structure,
-      members: structure.members.map((member) => ({
-        ...member,
-        stations: member.stations.map((station) => ({ ...station, channels: [channel] })),
-      })),
-    })),
-    nodes: SITE.nodes.map((node) => ({
-      ...node,
-      inputs: [
-        { name: 'a', unit: '/' as const, range },
-        { name: 'ex', unit: 'V' as const, range: [4, 6] as const },
-      ],
-    })),
-  };
-};
+import { quarter, RATIO, record, siteWith, type Given } from '../one-channel.ts';
 
 /** One sample a second from START on, looked back on as the site's records say. */
 const lookBack = async (
