@@ -11,8 +11,7 @@ beforeAll(async () => {
 });
 afterAll(() => influxd.close());
 
-const open = (place: string) =>
-  openInfluxStore(`influx+http://${influxd.host}/${place}`, PAIRS);
+const open = (place: string) => openInfluxStore(`influx+http://${influxd.host}/${place}`, PAIRS);
 
 const steady = (seq: number, at: number, value: number) =>
   frameOf({
@@ -55,10 +54,8 @@ test('a database that dies refuses the commit; the same frames go in once when i
 });
 
 test('an address without a database, and one where nobody listens, are refused', async () => {
-  await expect(
-    openInfluxStore(`influx+http://${influxd.host}`, {}),
-  ).rejects.toThrow(/expected influx\+http/);
-  await expect(
-    openInfluxStore('influx+http://127.0.0.1:1/d', {}),
-  ).rejects.toThrow();
+  await expect(openInfluxStore(`influx+http://${influxd.host}`, {})).rejects.toThrow(
+    /expected influx\+http/,
+  );
+  await expect(openInfluxStore('influx+http://127.0.0.1:1/d', {})).rejects.toThrow();
 });
