@@ -110,7 +110,7 @@ describe('limits of a channel', () => {
       {
         path: `${at}/0/value`,
         expected: 'at most 80 % of yield, the highest the site allows',
-        came: '123 as stress_MPa, 80.39 % of yield',
+        came: '123 as stress_MPa, 80.3933 % of yield',
       },
     ]);
   });
