@@ -208,7 +208,7 @@ export interface RecordStore {
   addAlarmEvents(events: readonly AlarmEvent[]): Promise<void>;
   /** Newest first. */
   alarmEvents(atMost: number): Promise<readonly AlarmEvent[]>;
-  /** The last event of each channel and level. */
+  /** The last event of each channel and level, late ones left out. */
   lastAlarmEvents(): Promise<readonly AlarmEvent[]>;
   addLimitChange(change: LimitChange): Promise<void>;
   /** The last change of each channel. */

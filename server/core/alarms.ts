@@ -21,12 +21,18 @@ interface Watch {
   late: LimitState;
 }
 
-const eventOf = (id: string, { threshold }: Watch, crossing: Crossing): AlarmEvent => ({
+const eventOf = (
+  id: string,
+  { threshold }: Watch,
+  crossing: Crossing,
+  late: boolean,
+): AlarmEvent => ({
   id: `${id}/${threshold.level}/${crossing.kind}/${Math.round(crossing.at * 1e6)}`,
   channel: id,
   level: threshold.level,
   ...crossing,
   threshold: Math.sign(crossing.value) * threshold.raise,
+  late,
 });
 
 /** The alarm stage with its memory: every sample of every channel against the limits in force. */
@@ -36,7 +42,7 @@ export class AlarmKeeper {
   readonly #active = new Map<string, AlarmEvent>();
   #recent: AlarmEvent[];
 
-  /** `last`: the last event of each channel and level; `recent`: newest first. */
+  /** `last`: the last event of each channel and level, late ones left out; `recent`: newest first. */
   constructor(
     channels: readonly PlannedChannel[],
     limits: Readonly<Record<string, readonly Limit[]>>,
@@ -58,7 +64,8 @@ export class AlarmKeeper {
     const ended = dropped.flatMap((watch) => {
       const raised = this.#active.get(`${plan.channel.id}/${watch.threshold.level}`);
       if (!raised) return [];
-      return [eventOf(plan.channel.id, watch, { kind: 'returned', at, value: raised.value })];
+      const returned = { kind: 'returned', at, value: raised.value } as const;
+      return [eventOf(plan.channel.id, watch, returned, false)];
     });
     for (const event of ended) this.#note(event);
     this.#watches[plan.index] = this.#watch(plan, limits);
@@ -88,7 +95,7 @@ export class AlarmKeeper {
         else watch.state = result.state;
         for (const crossing of result.crossings) {
           const id = this.#channels[block.channel]?.channel.id ?? '';
-          events.push(eventOf(id, watch, crossing));
+          events.push(eventOf(id, watch, crossing, late));
         }
       }
     }
@@ -125,6 +132,9 @@ export class AlarmKeeper {
 
   #remember(event: AlarmEvent): void {
     if (this.#recent.some(({ id }) => id === event.id)) return;
-    this.#recent = [event, ...this.#recent].slice(0, RECENT);
+    // In its own time: what comes late may be older than all that is at hand.
+    const older = this.#recent.findIndex(({ at }) => at <= event.at);
+    const place = older < 0 ? this.#recent.length : older;
+    this.#recent = this.#recent.toSpliced(place, 0, event).slice(0, RECENT);
   }
 }

@@ -50,4 +50,6 @@ export interface AlarmEvent {
   readonly value: number;
   /** The threshold it was compared with, in the channel's SI unit, signed to the side crossed. */
   readonly threshold: number;
+  /** Of a frame that came late: it is said of the past, and nothing stands or ends by it now. */
+  readonly late: boolean;
 }

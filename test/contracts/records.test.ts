@@ -12,9 +12,14 @@ import type { CheckRecord } from '../../shared/protocol/checks.ts';
 const root = mkdtempSync(join(tmpdir(), 'yieldward-records-'));
 afterAll(() => rmSync(root, { recursive: true, force: true }));
 
-const event = (kind: AlarmEvent['kind'], at: number, level: AlarmEvent['level'] = 'stop') => ({
+const event = (
+  kind: AlarmEvent['kind'],
+  at: number,
+  level: AlarmEvent['level'] = 'stop',
+  late = false,
+): AlarmEvent => ({
   ...{ id: `c1/${level}/${kind}/${at}`, channel: 'c1', level, kind },
-  ...{ at: epochSeconds(at), value: 1e-3, threshold: 0.9e-3 },
+  ...{ at: epochSeconds(at), value: 1e-3, threshold: 0.9e-3, late },
 });
 
 const limits: Limit[] = [
@@ -59,6 +64,25 @@ test('alarm events and limit changes stay, each once, across a restart', async (
   await again.records.close();
 });
 
+test('what came late is kept and told, and is not the last that happened', async () => {
+  const folder = join(root, 'e');
+  const first = await openSqliteStores(folder, {});
+  const [stands, before, over] = [
+    event('raised', 100),
+    event('raised', 10, 'stop', true),
+    event('returned', 20, 'stop', true),
+  ];
+  await first.records.addAlarmEvents([stands]);
+  await first.records.addAlarmEvents([before, over]);
+  await first.records.close();
+  await first.samples.close();
+  const again = await openSqliteStores(folder, {});
+  expect(await again.records.lastAlarmEvents()).toEqual([stands]);
+  expect(await again.records.alarmEvents(9)).toEqual([stands, over, before]);
+  await again.records.close();
+  await again.samples.close();
+});
+
 test('revisions of the site stay, each once, and a records file of version 1 is brought on', async () => {
   const folder = join(root, 'c');
   const { default: Database } = await import('better-sqlite3');
@@ -67,6 +91,7 @@ test('revisions of the site stay, each once, and a records file of version 1 is 
   await first.samples.close();
   const file = new Database(join(folder, 'records.sqlite'));
   file.exec('DROP TABLE site_revision; DROP TABLE channel_check');
+  file.exec('ALTER TABLE alarm_event DROP COLUMN late');
   file.pragma('user_version = 1');
   file.close();
 

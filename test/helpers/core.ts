@@ -156,6 +156,7 @@ export const SITE: Site = {
 export const RAISED: AlarmEvent = {
   ...{ id: 'ratio/caution/raised/1800000000500000', channel: 'ratio', level: 'caution' },
   ...{ kind: 'raised', at: epochSeconds(START + 0.5), value: 7.7e-4, threshold: 7.57e-4 },
+  late: false,
 };
 
 const HEALTH: Health = {

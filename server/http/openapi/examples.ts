@@ -31,6 +31,7 @@ const RAISED: AlarmEvent = {
   at: epochSeconds(NOON + 2.4),
   value: 771.2e-6,
   threshold: 757.1e-6,
+  late: false,
 };
 
 const health: Health = {

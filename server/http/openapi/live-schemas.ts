@@ -117,6 +117,7 @@ export const LIVE_SCHEMAS: Readonly<Record<string, Schema>> = {
     at: time('Of the sample that brought it about'),
     value: figure(`The sample, ${SI}`),
     threshold: figure(`What it was compared with, ${SI}, signed to the side crossed`),
+    late: flag('Of a frame that came late: nothing stands or ends by it now'),
   }),
   ActiveAlarm: map('An alarm that has not returned', {
     channel: text('Id of the channel'),

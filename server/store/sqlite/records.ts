@@ -3,6 +3,10 @@ import type { CheckRecord } from '../../../shared/protocol/checks.ts';
 import type { LimitChange, SiteRevision } from '../../ports.ts';
 import { openFile, type Database } from './schema.ts';
 
+type AlarmRow = Omit<AlarmEvent, 'late'> & { readonly late: number };
+
+const alarmOf = (row: AlarmRow): AlarmEvent => ({ ...row, late: row.late !== 0 });
+
 /** What people and alarms wrote. Synchronous: lives on the writer's thread. */
 export class SqliteRecords {
   readonly #database: Database;
@@ -13,24 +17,28 @@ export class SqliteRecords {
 
   addAlarmEvents(events: readonly AlarmEvent[]): void {
     const insert = this.#database.prepare(
-      'INSERT OR IGNORE INTO alarm_event VALUES (@id, @channel, @level, @kind, @at, @value, @threshold)',
+      'INSERT OR IGNORE INTO alarm_event VALUES (@id, @channel, @level, @kind, @at, @value, @threshold, @late)',
     );
-    this.#database.transaction(() => events.forEach((event) => insert.run(event)))();
+    this.#database.transaction(() =>
+      events.forEach((event) => insert.run({ ...event, late: Number(event.late) })),
+    )();
   }
 
   alarmEvents(atMost: number): AlarmEvent[] {
-    return this.#database
+    const rows = this.#database
       .prepare('SELECT * FROM alarm_event ORDER BY at DESC, rowid DESC LIMIT ?')
-      .all(atMost) as AlarmEvent[];
+      .all(atMost) as AlarmRow[];
+    return rows.map(alarmOf);
   }
 
   lastAlarmEvents(): AlarmEvent[] {
-    return this.#database
+    const rows = this.#database
       .prepare(
         'SELECT * FROM alarm_event WHERE rowid IN (SELECT max(rowid) FROM alarm_event AS newest ' +
-          'GROUP BY channel, level) ORDER BY at',
+          'WHERE late = 0 GROUP BY channel, level) ORDER BY at',
       )
-      .all() as AlarmEvent[];
+      .all() as AlarmRow[];
+    return rows.map(alarmOf);
   }
 
   addLimitChange({ channel, limits, at, author, reason }: LimitChange): void {

@@ -58,10 +58,14 @@ const CHANNEL_CHECKS = `
   CREATE INDEX channel_check_place ON channel_check (channel, kind, id);
 `;
 
+const LATE_ALARMS = `
+  ALTER TABLE alarm_event ADD COLUMN late INTEGER NOT NULL DEFAULT 0;
+`;
+
 /** What makes each version out of the one before; a file is at the version of as many as it has. */
 const FILES: Readonly<Record<'samples' | 'records', readonly string[]>> = {
   samples: [SAMPLES],
-  records: [RECORDS, SITE_REVISIONS, CHANNEL_CHECKS],
+  records: [RECORDS, SITE_REVISIONS, CHANNEL_CHECKS, LATE_ALARMS],
 };
 
 /** Opens or makes a file of the data folder; everything committed is on disk (WAL, full sync). */

@@ -1,11 +1,13 @@
-import { expect, test } from 'vitest';
+import { describe, expect, onTestFinished, test } from 'vitest';
 import { AlarmKeeper } from '../../../server/core/alarms.ts';
 import { compileExpression } from '../../../server/site/expression.ts';
+import { openSqliteStores } from '../../../server/store/sqlite/open.ts';
 import type { ChannelBlock } from '../../../shared/model/block.ts';
 import type { Limit } from '../../../shared/model/limit.ts';
 import { epochSeconds, seconds } from '../../../shared/model/units.ts';
 import { planSite, type PlannedChannel } from '../../../shared/pipeline/index.ts';
 import { SITE, START } from '../../helpers/core.ts';
+import { temporaryFolder } from '../../helpers/process.ts';
 
 const { channels } = planSite(SITE, compileExpression);
 const [channel] = channels;
@@ -67,6 +69,45 @@ test('a late block alarms in the past and leaves the present', () => {
   expect(events).toHaveLength(2);
   expect(keeper.list().active).toEqual([]);
   expect(keeper.list().recent).toHaveLength(2);
+});
+
+describe('what came late', () => {
+  const backlog = [block(START - 50, 900e-6), block(START - 40, 100e-6)];
+
+  test('leaves a standing alarm as it is, after a restart too', async () => {
+    const { samples, records } = await openSqliteStores(temporaryFolder());
+    onTestFinished(async () => {
+      await samples.close();
+      await records.close();
+    });
+    const before = new AlarmKeeper(channels, LIMITS, [], []);
+    const events = [
+      ...before.accept([block(START, 900e-6)], false),
+      ...backlog.flatMap((one) => before.accept([one], true)),
+    ];
+    expect(events).toHaveLength(6);
+    await records.addAlarmEvents(events);
+    const last = await records.lastAlarmEvents();
+    const after = new AlarmKeeper(channels, LIMITS, last, await records.alarmEvents(200));
+    expect(after.list()).toEqual(before.list());
+    expect(kinds(after)).toEqual([
+      ['stop', START],
+      ['caution', START],
+    ]);
+  });
+
+  test('stands in the list at its own time', () => {
+    const keeper = new AlarmKeeper(channels, { [ID]: [limit('stop', 800e-6)] }, [], []);
+    keeper.accept([block(START, 900e-6)], false);
+    for (const one of backlog) keeper.accept([one], true);
+    keeper.accept([block(START + 1, 100e-6)], false);
+    expect(keeper.list().recent.map(({ at, kind, late }) => [at - START, kind, late])).toEqual([
+      [1, 'returned', false],
+      [0, 'raised', false],
+      [-40, 'returned', true],
+      [-50, 'raised', true],
+    ]);
+  });
 });
 
 test('a limit that is taken away ends its alarm; another level goes on', () => {
