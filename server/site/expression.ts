@@ -1,23 +1,38 @@
-import { all, create, type MathNode, type Unit } from 'mathjs';
+import { createRequire } from 'node:module';
+import type * as MathJs from 'mathjs';
+import type { MathJsInstance, MathNode, Unit } from 'mathjs';
 import type { Measurand } from '../../shared/model/site.ts';
 import type { CompileExpression } from '../../shared/pipeline/evaluation.ts';
 
-const math = create(all ?? {});
-// Taken before it is taken away from expressions.
-const parseText = math.parse.bind(math);
-const parse = (text: string): MathNode => parseText(text);
-const unit = (figure: number, of: string): Unit => math.unit(figure, of);
-// What would reach out of the expression is taken away, as the library's documentation advises.
+interface Arithmetic {
+  readonly math: MathJsInstance;
+  readonly parse: (text: string) => MathNode;
+}
+
 const refuse = () => {
   throw new Error('is not available');
 };
-math.import(
-  {
-    ...{ import: refuse, createUnit: refuse, evaluate: refuse, parse: refuse, simplify: refuse },
-    ...{ derivative: refuse, resolve: refuse, reviver: refuse },
-  },
-  { override: true },
-);
+
+/**
+ * A large library, so it is loaded with the first expression. What would reach out of an expression
+ * is taken away, as the library's documentation advises.
+ */
+const load = (): Arithmetic => {
+  const { create, all } = createRequire(import.meta.url)('mathjs') as typeof MathJs;
+  const math = create(all ?? {});
+  const parse = math.parse.bind(math);
+  math.import(
+    {
+      ...{ import: refuse, createUnit: refuse, evaluate: refuse, parse: refuse, simplify: refuse },
+      ...{ derivative: refuse, resolve: refuse, reviver: refuse },
+    },
+    { override: true },
+  );
+  return { math, parse: (text) => parse(text) };
+};
+
+let loaded: Arithmetic | null = null;
+const arithmetic = (): Arithmetic => (loaded ??= load());
 
 /** How an expression reads each measurand: strain, angles and numbers are bare. */
 const UNIT_OF: Readonly<Record<Measurand, string | null>> = {
@@ -58,7 +73,7 @@ const strangerIn = (root: MathNode, names: readonly string[]): string | null => 
 
 const parsed = (text: string): MathNode | string => {
   try {
-    return parse(text);
+    return arithmetic().parse(text);
   } catch (error) {
     return error instanceof Error ? error.message : 'no expression';
   }
@@ -70,11 +85,11 @@ const withUnits = (names: Readonly<Record<string, Measurand>>) =>
     Object.entries(names).map(([name, measurand], i) => {
       const figure = 1.25 + 0.5 * i;
       const si = UNIT_OF[measurand];
-      return [name, si === null ? figure : unit(figure, si)];
+      return [name, si === null ? figure : arithmetic().math.unit(figure, si)];
     }),
   );
 
-const isUnit = (value: unknown): value is Unit => math.typeOf(value) === 'Unit';
+const isUnit = (value: unknown): value is Unit => arithmetic().math.typeOf(value) === 'Unit';
 
 /**
  * Why an expression cannot be a channel of this measurand, or null. `names`: what each name
@@ -106,7 +121,7 @@ export const expressionFault = (
       if (typeof value === 'number') return null;
       return { expected: 'a figure without unit', came: unitText(value) };
     }
-    if (isUnit(value) && value.equalBase(unit(1, wanted))) return null;
+    if (isUnit(value) && value.equalBase(arithmetic().math.unit(1, wanted))) return null;
     return { expected: `a figure in ${wanted}`, came: unitText(value) };
   } catch (error) {
     const came = error instanceof Error ? error.message : String(error);
@@ -116,12 +131,12 @@ export const expressionFault = (
 
 const unitText = (value: unknown): string => {
   if (isUnit(value)) return `one in ${value.toSI().formatUnits()}`;
-  return typeof value === 'number' ? 'one without unit' : math.typeOf(value);
+  return typeof value === 'number' ? 'one without unit' : arithmetic().math.typeOf(value);
 };
 
 /** For expressions that `expressionFault` passes; SI figures in and out. */
 export const compileExpression: CompileExpression = (text, names) => {
-  const code = parse(text).compile();
+  const code = arithmetic().parse(text).compile();
   const scope: Record<string, number> = {};
   return (columns, out) => {
     for (let i = 0; i < out.length; i++) {
