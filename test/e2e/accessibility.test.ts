@@ -15,7 +15,7 @@ let demo: Demo;
 let browser: Browser;
 beforeAll(async () => {
   [demo, browser] = await Promise.all([startDemo(join(folder, 'data')), openBrowser()]);
-}, 60_000);
+}, 180_000);
 afterAll(async () => {
   await browser.close();
   await demo.end();
@@ -49,5 +49,5 @@ test.each(PLACES.flatMap((place) => SCREENS.map((screen) => [place, screen] as c
     if (place.includes('open=')) await page.getByRole('dialog').waitFor();
     expect(await seriousFaults(page)).toEqual([]);
   },
-  30_000,
+  180_000,
 );

@@ -17,6 +17,9 @@ const CHROMIUM = {
   ],
 };
 
+/** A busy machine may be this slow, ms. */
+const PATIENCE = 60_000;
+
 export const openBrowser = (): Promise<Browser> => chromium.launch(CHROMIUM);
 
 export interface Demo {
@@ -91,6 +94,7 @@ export const openPage = async (
   options: BrowserContextOptions = {},
 ): Promise<Page> => {
   const page = await (await browser.newContext(options)).newPage();
+  page.setDefaultTimeout(PATIENCE);
   await page.goto(url);
   await page.getByText('SIMULATED').first().waitFor();
   return page;
