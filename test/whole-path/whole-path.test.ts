@@ -2,7 +2,6 @@
 import { execFile } from 'node:child_process';
 import { readdirSync, readFileSync } from 'node:fs';
 import { join } from 'node:path';
-import { fileURLToPath } from 'node:url';
 import { promisify } from 'node:util';
 import { connectAsync } from 'mqtt';
 import { describe, expect, onTestFinished, test } from 'vitest';
@@ -18,22 +17,11 @@ import type {
 } from '../../shared/protocol/http.ts';
 import { startInfluxd } from '../helpers/influxd.ts';
 import { startMosquitto } from '../helpers/mosquitto.ts';
-import { endProcess, printed, startProcess, temporaryFolder } from '../helpers/process.ts';
+import { endProcess, temporaryFolder } from '../helpers/process.ts';
+import { startServer, type Server } from './server.ts';
 import { writeSite } from './site.ts';
 
-const MAIN = fileURLToPath(new URL('../../dist/server/main.js', import.meta.url));
 const T0 = Math.floor(Date.now() / 1e3) - 60;
-
-const start = async (args: readonly string[]) => {
-  const child = startProcess(process.execPath, [MAIN, '--port', '0', ...args]);
-  const [text = '', mqtt = '', url = ''] = await printed(
-    child,
-    /Broker: (mqtt:\/\/[\w.]+:\d+)[\s\S]*Ready: (http:\S+)/,
-  );
-  const json = async <T>(path: string): Promise<T> =>
-    (await (await fetch(`${url}/api/${path}`)).json()) as T;
-  return { child, text, mqtt, url, json };
-};
 
 /** A full bending bridge is linear: r = GF·ε (Dally & Riley), so 2 mV/V at GF 2 are 1000 µε. */
 const ratioOf = (microstrain: number) => 2e-6 * microstrain;
@@ -84,7 +72,7 @@ describe.each(PLACES)('$name', ({ open, simulated }) => {
     const folder = temporaryFolder();
     const places = ['--site', writeSite(folder, simulated), '--data', join(folder, 'data')];
     const args = [...places, ...(await open())];
-    const first = await start(args);
+    const first = await startServer(args);
     expect(first.text).not.toContain('Simulated nodes');
 
     const client = await connectAsync(first.mqtt, { protocolVersion: 4 });
@@ -102,7 +90,7 @@ describe.each(PLACES)('$name', ({ open, simulated }) => {
     await promisify(execFile)('mosquitto_pub', ['-p', port, '-q', '1', '-t', topic, '-m', pack]);
 
     const window = `from=${T0}&to=${T0 + 10}&points=10`;
-    const look = async ({ json, url }: Awaited<ReturnType<typeof start>>) => {
+    const look = async ({ json, url }: Server) => {
       const history = await json<History>(`history?channel=tip&${window}`);
       const csv = await (await fetch(`${url}/api/history?channel=tip&${window}&format=csv`)).text();
       return { history, csv };
@@ -139,7 +127,7 @@ describe.each(PLACES)('$name', ({ open, simulated }) => {
     expect(limits.status).toBe(200);
 
     await endProcess(first.child, 'SIGKILL');
-    const second = await start(args);
+    const second = await startServer(args);
     const after = await look(second);
     expect(after.history.t).toEqual(before.history.t);
     expect(after.history.max).toEqual(before.history.max);
@@ -156,7 +144,14 @@ describe.each(PLACES)('$name', ({ open, simulated }) => {
 test('no simulated node is started for a site file, not even for a simulated one', async () => {
   const folder = temporaryFolder();
   const site = writeSite(folder, true);
-  const { child } = await start(['--site', site, '--data', join(folder, 'd'), '--mqtt-port', '0']);
+  const { child } = await startServer([
+    '--site',
+    site,
+    '--data',
+    join(folder, 'd'),
+    '--mqtt-port',
+    '0',
+  ]);
   const children = readdirSync('/proc')
     .filter((name) => /^\d+$/.test(name))
     .filter((name) => {
