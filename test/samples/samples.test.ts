@@ -11,7 +11,7 @@ import { epochSeconds, seconds } from '../../shared/model/units.ts';
 import { encodeFrame } from '../../shared/pipeline/1-decode/frame.ts';
 import { topicOf } from '../../shared/pipeline/1-decode/topics.ts';
 import { createEngine } from '../helpers/engine.ts';
-import { openStore } from '../helpers/open-store.ts';
+import { memorySamples } from '../helpers/memory-samples.ts';
 
 interface FrameOfSample {
   readonly node: string;
@@ -105,7 +105,7 @@ describe('golden samples', () => {
     const messages = JSON.parse(textOf(folder, 'messages.json')) as Message[];
     const expected = JSON.parse(textOf(folder, 'expected.json')) as Expected;
     const digits = expected.digits ?? DIGITS;
-    const engine = createEngine(read.site, await openStore());
+    const engine = createEngine(read.site, memorySamples());
     for (const message of messages) {
       const { topic, payload } = payloadOf(message);
       await engine.deliver(topic, payload);
