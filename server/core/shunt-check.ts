@@ -6,7 +6,7 @@ import type { CheckLine, Given, ShuntRequest, TimeWindow } from '../../shared/pr
 import type { CheckLines, NodeCommands } from '../ports.ts';
 import { ARRIVAL, pause, type StepParts } from './push-check.ts';
 
-/** After the shunt is laid or taken off a filter may still be settling, s. */
+/** Filters settle and clocks differ: nothing is read so near to a change of the shunt, s. */
 const SETTLING = 0.5;
 /** The node lets go by itself so much later than it is read, s. */
 const SPARE = 5;
@@ -48,15 +48,16 @@ async function* commanded(parts: ShuntParts, shunt: Shunt): AsyncGenerator<Check
   const tell = (on: boolean) =>
     commands.command(node, { kind: 'shunt', input, on, seconds: seconds + SPARE });
   const asked = clock.now();
-  const before = ending(asked - seconds, seconds);
+  const before = ending(asked - SETTLING - seconds, seconds);
   const outcome = await tell(true);
   if (!outcome.ok) {
     yield { kind: 'stopped', why: outcome.why, byHand: true };
     return;
   }
-  yield { kind: 'phase', phase: 'shunt-on', seconds: SETTLING + seconds };
+  const laid = SETTLING + seconds + SETTLING;
+  yield { kind: 'phase', phase: 'shunt-on', seconds: laid };
   const during = ending(clock.now() + SETTLING, seconds);
-  await pause(clock, SETTLING + seconds);
+  await pause(clock, laid);
   const off = await tell(false);
   // Not acknowledged: it lets go by itself.
   const rest = off.ok ? SETTLING : SPARE + SETTLING;

@@ -22,7 +22,7 @@ export interface Sampler {
   block(t0: EpochSeconds, dt: number, count: number): readonly InputBlock[];
   /** Begins a fault at a time, or ends all of them. */
   play(request: FaultRequest, at: EpochSeconds): void;
-  /** Lays the node's shunt across an input's bridge for so long from `at` on; false: it has none. */
+  /** Lays the node's shunt across an input's bridge for so long from `at` on, 0: takes it off; false: there is none. */
   shunt(input: string, at: EpochSeconds, seconds: number): boolean;
 }
 
@@ -119,7 +119,11 @@ export const createSampler = (options: {
     },
     shunt: (input, at, seconds) => {
       if (!feelings.get(input)?.acquisition.shunted) return false;
-      shunts.set(input, { from: at, until: at + seconds });
+      const laid = shunts.get(input);
+      // Taken off: it was there until now, and the samples until now are still to come.
+      const from = seconds > 0 ? at : (laid?.from ?? at);
+      const until = seconds > 0 ? at + seconds : Math.min(at, laid?.until ?? at);
+      shunts.set(input, { from, until });
       return true;
     },
     play: (request, at) => {

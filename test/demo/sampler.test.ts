@@ -192,8 +192,7 @@ describe('faults', () => {
 });
 
 describe('the shunt of a node', () => {
-  // −Rg/(GF·(Rg + Rs)) of 350 Ω, GF 2.11 and 350 kΩ, parallel resistors; the leads of 0.9 Ω beside
-  // the gauge take off Rg/(Rg + RL), 0.26 %; computed.
+  // −Rg/(GF·(Rg + Rs)) of 350 Ω, GF 2.11 and 350 kΩ: parallel resistors, computed.
   const DUE = -473.46;
 
   test('adds the output of 350 kΩ across the gauge for as long as it is asked', () => {
@@ -213,6 +212,8 @@ describe('the shunt of a node', () => {
     if (!sampler) throw new Error('n1');
     sampler.shunt('s7', epochSeconds(BEGIN - 60), 10);
     sampler.shunt('s7', epochSeconds(BEGIN - 58), 0);
+    const laid = strainAfter(sampler, 'B1-mid-bottom-left', -59.5) * 1e6;
+    expect(laid / DUE).toBeCloseTo(1, 2);
     const left = strainAfter(sampler, 'B1-mid-bottom-left', -55) * 1e6;
     expect(Math.abs(left)).toBeLessThan(3);
     expect(sampler.shunt('s9', epochSeconds(BEGIN), 10)).toBe(false);

@@ -123,7 +123,7 @@ const SHUNT: ShuntRequest = {
   ...{ channel: TIP, how: 'commanded', place: 'gauge', arm: 1, resistance: 350e3 },
   ...{ seconds: 5, read: null, ...SIGNED },
 };
-/** −Rg/(GF·(Rg + Rs)) of 350 Ω, GF 2.11 and 350 kΩ: parallel resistors, computed. Leads take 1 %. */
+/** −Rg/(GF·(Rg + Rs)) of 350 Ω, GF 2.11 and 350 kΩ: parallel resistors, computed. */
 const SHOWN = -473.46e-6;
 
 test('a shunt on command is laid, read, taken off and read again', async () => {
