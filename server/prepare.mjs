@@ -169,7 +169,7 @@ const STEPS = [
   {
     name: 'Building the web page',
     stamp: 'dist/client-stamp',
-    sources: ['shared', 'client', 'tsconfig.json', 'package-lock.json'],
+    sources: ['shared', 'client', 'docs/site.schema.json', 'tsconfig.json', 'package-lock.json'],
     results: ['dist/client/index.html'],
     make: () =>
       runInstalled('vite/bin/vite.js', ['build', '--config', join('client', 'vite.config.ts')]),

@@ -13,7 +13,7 @@ const isProblem = (body: unknown): body is Problem =>
   typeof body === 'object' && body !== null && 'error' in body && 'faults' in body;
 
 /** `T` is what the server's own contract promises for `path`. */
-const ask = async <T>(path: string, init: RequestInit = {}): Promise<Answer<T>> => {
+export const ask = async <T>(path: string, init: RequestInit = {}): Promise<Answer<T>> => {
   try {
     const response = await fetch(new URL(`api/${path}`, document.baseURI), init);
     const body: unknown = await response.json();

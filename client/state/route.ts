@@ -33,7 +33,8 @@ export const parseRoute = (hash: string): Route => {
   const [path = '', query = ''] = hash.replace(/^#?\/?/, '').split('?');
   const given = new URLSearchParams(query);
   return {
-    page: PAGES.find((page) => page === path) ?? HOME.page,
+    // What follows a / is a page's own.
+    page: PAGES.find((page) => page === path.split('/')[0]) ?? HOME.page,
     chosen: [...new Set(given.getAll('channel'))].slice(0, MOST_CHOSEN),
     span: SPANS.find((span) => span === Number(given.get('span'))) ?? HOME.span,
     structure: given.get('structure'),

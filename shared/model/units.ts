@@ -55,6 +55,7 @@ export const microstrainToStrain = (n: number) => strain(n * 1e-6);
 export const strainToMicrostrain = (e: Strain): number => e * 1e6;
 export const megapascalToPascal = (n: number) => pascal(n * 1e6);
 export const pascalToMegapascal = (p: Pascal): number => p / 1e6;
+export const pascalToGigapascal = (p: Pascal): number => p / 1e9;
 export const gigapascalToPascal = (n: number) => pascal(n * 1e9);
 export const kilonewtonMetreToNewtonMetre = (n: number) => newtonMetre(n * 1e3);
 export const newtonMetreToKilonewtonMetre = (m: NewtonMetre): number => m / 1e3;
@@ -65,6 +66,7 @@ export const squareMillimetreToSquareMetre = (n: number) => squareMetre(n * 1e-6
 export const degreeToRadian = (n: number) => radian((n * Math.PI) / 180);
 export const radianToDegree = (a: Radian): number => (a * 180) / Math.PI;
 export const metreToMillimetre = (m: Metre): number => m * 1e3;
+export const voltToMillivolt = (v: Volt): number => v * 1e3;
 export const ratioToMillivoltPerVolt = (r: Ratio): number => r * 1e3;
 export const millivoltPerVoltToRatio = (n: number) => ratio(n / 1e3);
 export const epochSecondsToDate = (t: EpochSeconds) => new Date(t * 1e3);
@@ -75,6 +77,9 @@ const NEWTON_PER_POUND_FORCE = 4.4482216152605;
 const METRE_PER_INCH = 0.0254;
 export const inchToMetre = (n: number) => metre(n * METRE_PER_INCH);
 export const metreToInch = (m: Metre): number => m / METRE_PER_INCH;
+/** Of section tables, in powers of a length: cm² and in², cm³ and in³, cm⁴ and in⁴. */
+export const centimetrePowerToInch = (n: number, power: 2 | 3 | 4): number => n / 2.54 ** power;
+export const inchPowerToCentimetre = (n: number, power: 2 | 3 | 4): number => n * 2.54 ** power;
 export const newtonToKip = (n: Newton): number => n / (1e3 * NEWTON_PER_POUND_FORCE);
 export const newtonMetreToKipFoot = (m: NewtonMetre): number =>
   m / (1e3 * NEWTON_PER_POUND_FORCE * 12 * METRE_PER_INCH);
@@ -87,3 +92,6 @@ export const pascalToKsi = (p: Pascal): number =>
   (p * METRE_PER_INCH ** 2) / (1e3 * NEWTON_PER_POUND_FORCE);
 export const celsiusToFahrenheit = (c: Celsius): number => c * 1.8 + 32;
 export const fahrenheitToCelsius = (f: number) => celsius((f - 32) / 1.8);
+/** Of a coefficient per kelvin. */
+export const perKelvinToPerFahrenheit = (n: number): number => n / 1.8;
+export const perFahrenheitToPerKelvin = (n: number): number => n * 1.8;
