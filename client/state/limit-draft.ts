@@ -1,6 +1,7 @@
 import type { Fault } from '../../shared/model/fault.ts';
 import type { Limit, LimitBasis, LimitContext, LimitLevel } from '../../shared/model/limit.ts';
 import { seconds } from '../../shared/model/units.ts';
+import { basesFor as basesOf } from '../../shared/pipeline/5-alarm/check-limits.ts';
 import { thresholdOf } from '../../shared/pipeline/5-alarm/threshold.ts';
 import { fieldText, typedNumber } from './number-text.ts';
 import { kindOfBasis, scaleFor, type Scale, type UnitSystem } from './quantity.ts';
@@ -17,8 +18,11 @@ export interface LimitDraft {
   readonly onDelay: string;
 }
 
-export const basesFor = ({ stressPerStrain }: LimitContext): readonly LimitBasis[] =>
-  stressPerStrain === null ? ['value'] : ['share', 'stress', 'strain'];
+const ORDER: readonly LimitBasis[] = ['share', 'stress', 'strain', 'value'];
+
+/** In the order in which the form offers them. */
+export const basesFor = (context: LimitContext): readonly LimitBasis[] =>
+  ORDER.filter((basis) => basesOf(context).includes(basis));
 
 export const draftScale = (
   basis: LimitBasis,
