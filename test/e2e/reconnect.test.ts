@@ -24,6 +24,8 @@ test('a page that loses its server says so, and shows what it missed when it is 
     .getByText(/not live|connection lost/i)
     .first()
     .waitFor();
+  // What is not known must not look like rest.
+  await page.getByText('Alarms not known now').first().waitFor();
   const lost = Date.now() / 1e3;
   const second = await startDemo(data, port, mqttPort);
   onTestFinished(() => second.end());
