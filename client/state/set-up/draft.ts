@@ -44,6 +44,28 @@ export const keepDraft = (memory: () => Memory, draft: Draft | null): boolean =>
   }
 };
 
+const SAVED = 'yieldward.set-up-saved';
+
+/** The revision that was put in force from this tab last; null: none, or the browser keeps none. */
+export const readSaved = (memory: () => Memory): number | null => {
+  try {
+    const kept: unknown = JSON.parse(memory().getItem(SAVED) ?? 'null');
+    return typeof kept === 'number' ? kept : null;
+  } catch (error) {
+    if (error instanceof Error) return null;
+    throw error;
+  }
+};
+
+export const keepSaved = (memory: () => Memory, revision: number | null): void => {
+  try {
+    memory().setItem(SAVED, JSON.stringify(revision));
+  } catch (error) {
+    // The browser keeps nothing for this page: it is said once less that a change is in force.
+    if (!(error instanceof Error)) throw error;
+  }
+};
+
 /** When a record was added is written by the server. */
 const withoutStamps = (value: Json | undefined): Json => {
   if (Array.isArray(value)) return value.map((element: Json) => withoutStamps(element));

@@ -2,7 +2,17 @@ import type { Fault } from '../../../shared/model/fault.ts';
 import type { ChannelChange, Problem, SetUpAnswer } from '../../../shared/protocol/http.ts';
 import { fetchSetUp, previewSetUp, putSetUp } from '../../feed/set-up.ts';
 import { differences } from './difference.ts';
-import { isTaken, keepDraft, readDraft, signed, withStep, type Draft, type Step } from './draft.ts';
+import {
+  isTaken,
+  keepDraft,
+  keepSaved,
+  readDraft,
+  readSaved,
+  signed,
+  withStep,
+  type Draft,
+  type Step,
+} from './draft.ts';
 import { newSlips, slipKey } from './slips.ts';
 import { isSame, pointerOf, withValue, type Json, type Path } from './tree.ts';
 
@@ -11,11 +21,6 @@ export type Preview =
   | { readonly kind: 'running'; readonly done: number; readonly of: number }
   | { readonly kind: 'done'; readonly channels: readonly ChannelChange[]; readonly of: Json }
   | { readonly kind: 'failed'; readonly why: string };
-
-/** What was put in force from here, and by what revision. */
-export interface Saved {
-  readonly revision: number;
-}
 
 const memory = () => sessionStorage;
 
@@ -33,7 +38,8 @@ export class SetUpState {
   outcome = $state('');
   preview = $state.raw<Preview>({ kind: 'none' });
   saving = $state(false);
-  saved = $state.raw<Saved | null>(null);
+  /** The revision put in force from here, until the next draft; kept while the page is read anew. */
+  saved = $state<number | null>(readSaved(memory));
   #steps = $state.raw<readonly Step[]>([]);
   #previewing: AbortController | null = null;
 
@@ -76,7 +82,7 @@ export class SetUpState {
     this.stands = answer.value;
     const { draft } = this;
     if (draft && isTaken(signed(draft), jsonOf(answer.value))) {
-      if (draft.basedOn !== answer.value.revision) this.saved = { revision: answer.value.revision };
+      if (draft.basedOn !== answer.value.revision) this.#took(answer.value.revision);
       this.#put(null);
     }
   }
@@ -127,7 +133,7 @@ export class SetUpState {
     const { stands, draft } = this;
     if (!stands) return;
     const begun = { basedOn: stands.revision, base: jsonOf(stands), answered: [] };
-    this.saved = null;
+    this.#took(null);
     this.#put({ author: '', reason: '', ...begun, ...draft, document });
   }
 
@@ -193,7 +199,7 @@ export class SetUpState {
     const answer = await putSetUp({ document, basedOn, author, reason });
     if (answer.ok) {
       this.stands = answer.value;
-      this.saved = { revision: answer.value.revision };
+      this.#took(answer.value.revision);
       this.#steps = [];
       this.#put(null);
       this.preview = { kind: 'none' };
@@ -206,6 +212,11 @@ export class SetUpState {
   #refused({ error, faults }: Problem): void {
     this.outcome = error;
     this.faults = faults;
+  }
+
+  #took(revision: number | null): void {
+    this.saved = revision;
+    keepSaved(memory, revision);
   }
 
   #put(draft: Draft | null): void {
