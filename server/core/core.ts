@@ -18,7 +18,7 @@ export interface CoreParts {
   readonly revision: () => number;
   readonly plan: SitePlan;
   readonly samples: SampleStore;
-  readonly records: RecordStore;
+  readonly records: Pick<RecordStore, 'addAlarmEvents' | 'addLimitChange'>;
   readonly tally: Tally;
   readonly alarms: AlarmKeeper;
   readonly present: PresentValues;

@@ -1,6 +1,6 @@
 import { describe, expect, test } from 'vitest';
 import { createEngine } from '../helpers/engine.ts';
-import { openStore } from '../helpers/open-store.ts';
+import { memorySamples } from '../helpers/memory-samples.ts';
 import { SITE, START } from '../helpers/core.ts';
 import type { SampleStore, StoredFrame } from '../../server/ports.ts';
 import { writeCbor } from '../../server/ingest/cbor.ts';
@@ -85,7 +85,7 @@ describe('acknowledged', () => {
 });
 
 test('a node that the site does not have is refused, counted under its name, and not stored', async () => {
-  const store = await openStore();
+  const store = memorySamples();
   const engine = createEngine(SITE, store);
   await engine.deliver(topicOf('n7', 'frame'), payloadOf(0, 'n7'));
   const stranger = engine.tally.report(epochSeconds(START)).find(({ node }) => node === 'n7');
@@ -97,7 +97,7 @@ test('a node that the site does not have is refused, counted under its name, and
 });
 
 test('one bad message loses nothing of those round it', async () => {
-  const engine = createEngine(SITE, await openStore());
+  const engine = createEngine(SITE, memorySamples());
   await Promise.all([
     engine.deliver(frameTopic, payloadOf(0)),
     engine.deliver(frameTopic, Buffer.from('{"not":"cbor"}')),

@@ -1,24 +1,20 @@
-import { describe, expect, onTestFinished, test } from 'vitest';
+import { describe, expect, test } from 'vitest';
 import { AlarmKeeper } from '../../../server/core/alarms.ts';
 import { createCore } from '../../../server/core/core.ts';
 import { PresentValues } from '../../../server/core/present.ts';
 import { Tally } from '../../../server/core/tally.ts';
 import { compileExpression } from '../../../server/site/expression.ts';
-import { openSqliteStores } from '../../../server/store/sqlite/open.ts';
 import type { Limit } from '../../../shared/model/limit.ts';
 import { epochSeconds, seconds } from '../../../shared/model/units.ts';
 import { planSite } from '../../../shared/pipeline/index.ts';
 import { MOST_POINTS } from '../../../shared/protocol/parse.ts';
 import { plainCore, SITE, START } from '../../helpers/core.ts';
 import { fakeClock } from '../../helpers/fakes.ts';
-import { temporaryFolder } from '../../helpers/process.ts';
+import { memoryRecords } from '../../helpers/memory-records.ts';
+import { memorySamples } from '../../helpers/memory-samples.ts';
 
-const scene = async () => {
-  const { samples, records } = await openSqliteStores(temporaryFolder());
-  onTestFinished(async () => {
-    await samples.close();
-    await records.close();
-  });
+const scene = () => {
+  const [samples, records] = [memorySamples(), memoryRecords()];
   const plan = planSite(SITE, compileExpression);
   const clock = fakeClock(START);
   const limits = new Map<string, readonly Limit[]>();
@@ -47,7 +43,7 @@ const limit = (level: Limit['level'], value: number, basis: Limit['basis'] = 'sh
 const BY = { author: 'Engineer', reason: 'for the proof load' };
 
 test('limits that may stand are durable, in force, and browsers hear of them', async () => {
-  const { core, records, told } = await scene();
+  const { core, records, told } = scene();
   const limits = [limit('caution', 0.5), limit('stop', 0.7)];
   expect(await core.setLimits('ratio', { limits, ...BY })).toEqual([]);
   expect(core.limits().ratio).toEqual(limits);
@@ -64,7 +60,7 @@ describe('refused, nothing changed', () => {
     ['caution past stop', [limit('caution', 0.7), limit('stop', 0.6)], '/limits/0/value', 'below'],
     ['another basis', [limit('stop', 5, 'value')], '/limits/0/basis', 'strain, stress, share'],
   ])('%s', async (_, limits, path, expected) => {
-    const { core, records, told } = await scene();
+    const { core, records, told } = scene();
     const [fault] = await core.setLimits('ratio', { limits, ...BY });
     expect(fault?.path).toBe(path);
     expect(fault?.expected).toContain(expected);
@@ -74,7 +70,7 @@ describe('refused, nothing changed', () => {
   });
 
   test('without a name, without a reason, for no channel', async () => {
-    const { core } = await scene();
+    const { core } = scene();
     const faults = await core.setLimits('ratio', { limits: [], author: ' ', reason: '' });
     expect(faults.map(({ path }) => path)).toEqual(['/author', '/reason']);
     expect(await core.setLimits('nobody', { limits: [], ...BY })).toMatchObject([
@@ -91,13 +87,13 @@ describe('history', () => {
     ['ratio', START, START + 1, MOST_POINTS + 1, 'points'],
     ['ratio', START, START + 1, 1.5, 'points'],
   ])('of %s from %d to %d in %d points is refused', async (id, from, to, points, field) => {
-    const { core } = await scene();
+    const { core } = scene();
     const answer = await core.history(id, epochSeconds(from), epochSeconds(to), points);
     expect(answer).toMatchObject({ ok: false, refusal: { field } });
   });
 
   test('has the step of its points, and gaps where an input was at its rail as float32', async () => {
-    const { core, samples } = await scene();
+    const { core, samples } = scene();
     // 0.004, the rail of SITE, is 0.004000000189989805 as float32.
     const values = Float32Array.of(1e-4, 0.004, 2e-4, 3e-4);
     await samples.commit([
