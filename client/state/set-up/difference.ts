@@ -101,3 +101,14 @@ export const clashes = (
         !(own.path.length === other.path.length && isSame(own.after, other.after)),
     ),
   );
+
+const OF_ITSELF = ['id', 'corrects', 'valid_from', 'author', 'reason', 'recorded_at'];
+
+/** What a record says otherwise than the one among `records` that it corrects. */
+export const correctedBy = (record: Json | undefined, records: readonly Json[]): Difference[] => {
+  const corrects = textAt(record, 'corrects');
+  const other = records.find((one) => textAt(one, 'id') === corrects);
+  return corrects === null || other === undefined
+    ? []
+    : differences(other, record).filter(({ path: [key = ''] }) => !OF_ITSELF.includes(key));
+};

@@ -13,7 +13,7 @@ import {
   type Draft,
   type Step,
 } from './draft.ts';
-import { newSlips, slipKey } from './slips.ts';
+import { newSlips, slipKey, slipsOf } from './slips.ts';
 import { isSame, pointerOf, withValue, type Json, type Path } from './tree.ts';
 
 export type Preview =
@@ -52,8 +52,13 @@ export class SetUpState {
   readonly changes = $derived.by(() =>
     this.draft ? differences(this.draft.base, this.draft.document) : [],
   );
+  /** Of what stands; worked out once, not with every key pressed. */
+  readonly #standingSlips = $derived.by(() => (this.base === null ? [] : slipsOf(this.base)));
+  readonly #baseStands = $derived.by(
+    () => this.base !== null && this.stands !== null && isSame(this.base, jsonOf(this.stands)),
+  );
   readonly slips = $derived.by(() =>
-    this.draft ? newSlips(this.draft.base, this.draft.document) : [],
+    this.draft ? newSlips(this.draft.base, this.#standingSlips, this.draft.document) : [],
   );
   readonly open = $derived.by(() =>
     this.slips.filter((slip) => !this.draft?.answered.includes(slipKey(slip))),
@@ -63,8 +68,7 @@ export class SetUpState {
     () =>
       this.draft !== null &&
       this.stands !== null &&
-      (this.draft.basedOn !== this.stands.revision ||
-        !isSame(this.draft.base, jsonOf(this.stands))),
+      (this.draft.basedOn !== this.stands.revision || !this.#baseStands),
   );
 
   get canUndo(): boolean {

@@ -37,15 +37,15 @@ export const inputOf = (site: Json, channel: Json): Json | undefined => {
   return listAt(node, 'inputs').find((one) => textAt(one, 'name') === textAt(channel, 'input'));
 };
 
-/** Ids that records, channels and all else in the site have. */
+/** Calibration records and zeros of the whole site. */
+export const recordsOf = (site: Json | undefined): Json[] =>
+  channelPlaces(site).flatMap(({ channel }) => [
+    ...listAt(channel, 'calibration'),
+    ...listAt(channel, 'zeros'),
+  ]);
+
 export const recordIdsOf = (site: Json | undefined): ReadonlySet<string> =>
-  new Set(
-    channelPlaces(site).flatMap(({ channel }) =>
-      [...listAt(channel, 'calibration'), ...listAt(channel, 'zeros')].flatMap(
-        (record) => textAt(record, 'id') ?? [],
-      ),
-    ),
-  );
+  new Set(recordsOf(site).flatMap((record) => textAt(record, 'id') ?? []));
 
 /** Ids of the elements of every list of that name, wherever it is. */
 export const idsUnder = (part: Json | undefined, list: string): ReadonlySet<string> => {

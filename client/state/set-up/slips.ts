@@ -178,7 +178,7 @@ const rawAt = (record: Json, bridge: BridgeResponse, value: number): number | nu
 };
 
 const rawText = (raw: number, input: Json | undefined): string =>
-  figureWithUnit(Number(raw.toPrecision(4)), unitOf('range', input), 'si');
+  figureWithUnit(Number(raw.toPrecision(4)), unitOf('range', input), 'si').replace('-', '\u2212');
 
 /** At the stop limit the input must still see what comes. */
 const inputRange: Rule = ({ site, record, recordPath, channel, member }) => {
@@ -255,9 +255,12 @@ const isUntouched = (stands: Json, draft: Json, at: string): boolean => {
   return isSame(valueAt(stands, record), valueAt(draft, record));
 };
 
-/** Questions that the draft raises and what stands did not; of two that differ, the new one is asked. */
-export const newSlips = (stands: Json, draft: Json): Slip[] => {
-  const old = new Set(slipsOf(stands).map(slipKey));
+/**
+ * Questions that the draft raises and what stands did not (`before`: its questions); of two gauges
+ * that differ, the new one is asked about.
+ */
+export const newSlips = (stands: Json, before: readonly Slip[], draft: Json): Slip[] => {
+  const old = new Set(before.map(slipKey));
   return slipsOf(draft).filter(
     (one) =>
       !old.has(slipKey(one)) &&

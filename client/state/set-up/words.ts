@@ -190,9 +190,20 @@ const CHOICES: Readonly<Record<string, Readonly<Record<string, string>>>> = {
 export const choiceText = (key: string, value: string): string =>
   CHOICES[key]?.[value] ?? value.replaceAll('-', ' ');
 
+const HELP: Readonly<Record<string, string>> = {
+  stated_V: 'At the bridge, as somebody states it. Either this, or the input that measures it.',
+  measured_by_input: 'An input of the same node in V, sample by sample.',
+  highest_limit_share_of_yield: 'No limit may pass this share of yield.',
+  value: 'In tension and compression alike.',
+  deadband: 'Returns to normal this far below the limit.',
+  simulated: 'Of simulated nodes: said on every screen and in every export.',
+  node: 'The node that measures it.',
+  input: 'Of the node; read by no other channel.',
+};
+
 /** What is said under a field: of the schema, unless its choices have words of their own. */
 export const helpOf = (key: string, description: string | undefined): string | undefined =>
-  key in CHOICES || key === 'valid_from' ? undefined : description;
+  HELP[key] ?? (key in CHOICES || key === 'valid_from' ? undefined : description);
 
 /** One of a list: what it is. */
 const ONE: Readonly<Record<string, string>> = {

@@ -3,6 +3,7 @@ import { expect, test } from 'vitest';
 import {
   carriedOver,
   clashes,
+  correctedBy,
   differences,
   nameOf,
 } from '../../../client/state/set-up/difference.ts';
@@ -61,6 +62,17 @@ test('what one changed inside clashes with the other having taken it away', () =
   const mine = differences(SITE, { ...SITE, nodes: [{ id: 'n1', inputs: [] }] });
   const theirs = differences(SITE, { ...SITE, nodes: [] });
   expect(clashes(mine, theirs)).toHaveLength(1);
+});
+
+test('a correction is told by what it says otherwise', () => {
+  const wrong = { id: 'r1', author: 'A', response: { gauge_factor: 21.1, poisson: 0.3 } };
+  const right = {
+    ...{ id: 'r2', corrects: 'r1', author: 'B', response: { gauge_factor: 2.11, poisson: 0.3 } },
+  };
+  expect(
+    correctedBy(right, [wrong]).map(({ path, before, after }) => [path, before, after]),
+  ).toEqual([[['response', 'gauge_factor'], 21.1, 2.11]]);
+  expect(correctedBy(wrong, [right])).toEqual([]);
 });
 
 const leaf = fc.oneof(fc.integer(), fc.string({ maxLength: 3 }), fc.boolean());

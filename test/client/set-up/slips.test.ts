@@ -1,6 +1,8 @@
 import { expect, test } from 'vitest';
-import { newSlips, slipsOf } from '../../../client/state/set-up/slips.ts';
+import { newSlips as slipsSince, slipsOf } from '../../../client/state/set-up/slips.ts';
 import { withValue, type Json, type Path } from '../../../client/state/set-up/tree.ts';
+
+const newSlips = (before: Json, after: Json) => slipsSince(before, slipsOf(before), after);
 
 const RECORD = {
   id: 'g1-cal1',
