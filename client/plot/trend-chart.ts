@@ -186,9 +186,14 @@ export class TrendChart {
       // Of lines that lie on each other the first one's label stands for the rest of its level.
       if (labels.slice(0, i).some((other) => this.#hides(other, one))) return;
       const room = LABEL * devicePixelRatio;
-      const fits = one.up ? one.y - bbox.top > room : bbox.top + bbox.height - one.y > room;
-      const above = one.up === fits;
-      const y = one.y + (above ? -4 : 5) * devicePixelRatio;
+      // Close before a stop limit is where the lines run on the way to it: named beyond both.
+      const { y: line, up } =
+        labels.find(
+          (o) => o.stop && !one.stop && o.up !== one.up && Math.abs(o.y - one.y) < room,
+        ) ?? one;
+      const fits = up ? line - bbox.top > room : bbox.top + bbox.height - line > room;
+      const above = up === fits;
+      const y = line + (above ? -4 : 5) * devicePixelRatio;
       const inset = 6 * devicePixelRatio;
       const x = one.stop ? bbox.left + inset : bbox.left + bbox.width - inset;
       ctx.textAlign = one.stop ? 'left' : 'right';

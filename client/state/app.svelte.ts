@@ -1,3 +1,4 @@
+import { isBelieved } from '../../shared/model/block.ts';
 import { createContext } from 'svelte';
 import { fetchSite } from '../feed/api.ts';
 import type { Site, Structure } from '../../shared/model/site.ts';
@@ -57,6 +58,17 @@ export class AppState {
   telling(facts: ChannelFacts, value: number): string {
     const stress = stressAt(value, facts.context);
     return stress === null ? this.text(facts, value) : quantityText(stress, this.stressScale);
+  }
+
+  /** Of these channels: how many have a limit, and how many of those cannot be judged just now. */
+  judged(of: readonly ChannelFacts[]): { limited: number; not: number } {
+    void this.live.pulse;
+    const limited = of.filter(({ index }) => {
+      const { caution, stop } = this.live.bounds(index);
+      return caution !== null || stop !== null;
+    });
+    const not = limited.filter(({ index }) => !isBelieved(this.live.read(index).quality));
+    return { limited: limited.length, not: not.length };
   }
 
   bare(facts: ChannelFacts, value: number | null): string {

@@ -85,6 +85,6 @@ export const axisRange = (
   const [up, down] = [high >= lean, -low >= lean];
   if (up) high = Math.max(high, ...values);
   if (down) low = Math.min(low, ...values);
-  const room = Math.max((high - low) * 0.09, least);
+  const room = Math.max((high - low) * 0.12, least);
   return [low < 0 ? low - room : -room / 2, high > 0 ? high + room : room];
 };
