@@ -243,5 +243,9 @@ export const figureWithUnit = (
 ): string => {
   const shown = unit?.[system];
   if (!shown) return String(value);
-  return `${fieldText(shown.fromFile(value))}${NO_BREAK}${shown.unit}`;
+  const figure = shown.fromFile(value);
+  // Of a figure that is converted, as many digits as are read.
+  const isConverted = shown !== unit?.si;
+  const text = isConverted ? String(Number(figure.toPrecision(5))) : fieldText(figure);
+  return `${text}${NO_BREAK}${shown.unit}`;
 };
