@@ -16,6 +16,7 @@ import type {
   PushRequest,
   ShuntRequest,
   StatedLimits,
+  ZerosAnswer,
   ZerosRequest,
 } from '../../shared/protocol/checks.ts';
 import type {
@@ -63,6 +64,7 @@ const BY_PEOPLE: readonly string[] = ['sign', 'shunt', 'insulation', 'self-heati
 export class ChannelChecks implements CheckDesk {
   readonly #parts: CheckParts;
   readonly #log: CheckLog;
+  #zeros: ZerosAnswer | null = null;
 
   constructor(parts: CheckParts) {
     this.#parts = parts;
@@ -73,7 +75,8 @@ export class ChannelChecks implements CheckDesk {
     const { current, setUp } = this.#parts;
     const channels: Answered[] = [];
     for (const plan of current.measured) channels.push(await this.#log.of(plan));
-    return { simulated: current.site.simulated, revision: setUp.revision, channels };
+    const { simulated } = current.site;
+    return { simulated, revision: setUp.revision, channels, zeros: this.#zeros };
   }
 
   run(request: CheckRequest): CheckLines {
@@ -134,8 +137,10 @@ export class ChannelChecks implements CheckDesk {
     return { ok: true, value: await this.#record(plan, [check], given, signed) } as const;
   }
 
-  zero(request: ZerosRequest): Promise<ZerosOutcome> {
-    return takeZeros(this.#parts, request);
+  async zero(request: ZerosRequest): Promise<ZerosOutcome> {
+    const outcome = await takeZeros(this.#parts, request);
+    if (outcome.kind === 'answered') this.#zeros = outcome.answer;
+    return outcome;
   }
 
   #planOf(id: string): ChannelPlan | undefined {

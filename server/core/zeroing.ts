@@ -193,7 +193,7 @@ export const takeZeros = async (parts: ZeroParts, request: ZerosRequest): Promis
   const { simulated } = current.site;
   const answer = (revision: number, done: ZerosAnswer['zeroed']): ZerosOutcome => ({
     kind: 'answered',
-    answer: { simulated, revision, zeroed: done, refused, cautions },
+    answer: { simulated, at, author, revision, zeroed: done, refused, cautions },
   });
   if (zeroed.length === 0) return answer(setUp.revision, []);
 

@@ -69,6 +69,8 @@ export interface ChecksAnswer {
   readonly revision: number;
   /** Measured channels in site order. */
   readonly channels: readonly ChannelChecks[];
+  /** The last that were taken since the server started; null: none. */
+  readonly zeros: ZerosAnswer | null;
 }
 
 interface Signed {
@@ -155,6 +157,8 @@ export interface ZerosRequest {
 
 export interface ZerosAnswer {
   readonly simulated: boolean;
+  readonly at: number;
+  readonly author: string;
   /** The set-up that stands now. */
   readonly revision: number;
   readonly zeroed: readonly {

@@ -33,7 +33,9 @@ const seriousFaults = async (page: Page): Promise<string[]> => {
     .map(({ id, nodes }) => `${id}: ${nodes.map(({ target }) => target.join(' ')).join(', ')}`);
 };
 
-const PLACES = ['#/watch', '#/alarms', '#/set-up', '#/watch?open=B1-mid-bottom-left'];
+const PLACES = [
+  ...['#/watch', '#/alarms', '#/set-up', '#/set-up/checks', '#/watch?open=B1-mid-bottom-left'],
+];
 const SCREENS = [
   { viewport: { width: 1440, height: 900 }, colorScheme: 'light' },
   { viewport: { width: 390, height: 844 }, colorScheme: 'dark' },

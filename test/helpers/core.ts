@@ -18,7 +18,7 @@ import {
   squareMetre,
   volt,
 } from '../../shared/model/units.ts';
-import type { ChannelChecks } from '../../shared/protocol/checks.ts';
+import type { ChannelChecks, ZerosAnswer } from '../../shared/protocol/checks.ts';
 import type { CurrentValue, Health, NodeTally } from '../../shared/protocol/http.ts';
 import { PLAIN_GAUGE } from './plain-gauge.ts';
 
@@ -263,6 +263,23 @@ const CHECKED: ChannelChecks = {
   ],
 };
 
+const ZEROS: ZerosAnswer = {
+  ...{
+    simulated: true,
+    at: START,
+    author: 'A',
+    revision: 2,
+    zeroed: [],
+    cautions: ['No load cell.'],
+  },
+  refused: [
+    {
+      channel: 'ratio',
+      refusal: { code: 'noisy', field: 'noise', expected: '10 µε', came: '40 µε' },
+    },
+  ],
+};
+
 const checkedLines = () => ({
   ok: true as const,
   lines: (async function* () {
@@ -274,14 +291,14 @@ const checkedLines = () => ({
 
 /** A desk by which every check passes; `over`: what a test wants otherwise. */
 export const plainChecks = (over: Partial<CheckDesk> = {}): CheckDesk => ({
-  answer: async () => ({ simulated: true, revision: 1, channels: [CHECKED] }),
+  answer: async () => ({ simulated: true, revision: 1, channels: [CHECKED], zeros: ZEROS }),
   run: checkedLines,
   push: checkedLines,
   shunt: checkedLines,
   enter: async () => ({ ok: true, value: CHECKED }),
   zero: async () => ({
     kind: 'answered',
-    answer: { simulated: true, revision: 2, zeroed: [], refused: [], cautions: [] },
+    answer: ZEROS,
   }),
   ...over,
 });

@@ -109,6 +109,7 @@ export const CHECK_SCHEMAS: Readonly<Record<string, Schema>> = {
     simulated: flag('true: the site is simulated'),
     revision: count('Of the set-up that stands'),
     channels: list(ref('ChannelChecks'), 'Measured channels in site order'),
+    zeros: orNull(ref('ZerosAnswer'), 'null: none taken since the server started'),
   }),
   CheckLine: oneOf(
     'A line of a check',
@@ -201,6 +202,8 @@ export const CHECK_SCHEMAS: Readonly<Record<string, Schema>> = {
   ),
   ZerosAnswer: map('What was zeroed and what not', {
     simulated: flag('true: the site is simulated'),
+    at: time('When'),
+    author: text('Who'),
     revision: count('The set-up that stands now'),
     zeroed: list(
       map('A zero', {

@@ -61,6 +61,8 @@ test('what drifts, is noisy or does not arrive is refused, each with its reason;
     ['steel', 'no-zero', 'steel, temperature'],
   ]);
   expect(setUp.revision).toBe(2);
+  // For whoever was reloaded meanwhile.
+  expect((await checks.answer()).zeros).toEqual(outcome.answer);
 });
 
 test('all that were zeroed are one revision; none zeroed is none', async () => {
