@@ -197,7 +197,7 @@ export class ChannelChecks implements CheckDesk {
   async *#run(plans: readonly ChannelPlan[], request: CheckRequest): AsyncGenerator<CheckLine> {
     const channels: Answered[] = [];
     for (const [i, plan] of plans.entries()) {
-      // Frames go first: a check may take a tenth of a second.
+      // Frames go first: a check of many samples takes some tenths of a second.
       await nextTurn();
       const { checks, given } = await this.#check(plan, request);
       const channel = await this.#record(plan, checks, given, request);

@@ -7,8 +7,8 @@ import { conversionAt, type ChannelPlan, type Conversion } from '../../shared/pi
 import type { TimeWindow } from '../../shared/protocol/checks.ts';
 import type { RawRun, SampleStore } from '../ports.ts';
 
-/** A window of so many samples at most; a longer one is cut to its end. */
-const MOST_SAMPLES = 200_000;
+/** A window of so many samples at most, 80 s at 2,000 a second; a longer one is cut to its end. */
+const MOST_SAMPLES = 160_000;
 /** One sample a second is due of an input of which nothing is known. */
 const UNKNOWN_STEP = seconds(1);
 
